@@ -1,0 +1,177 @@
+package grid
+
+import (
+	"math"
+	"slices"
+	"testing"
+
+	"betaloom/schema"
+)
+
+func axis(name string, n int) schema.AxisBlock {
+	a := schema.AxisBlock{Parameter: name}
+	for i := range n {
+		a.Values = append(a.Values, 1+float64(i))
+	}
+	return a
+}
+
+func box(t *testing.T, axes ...schema.AxisBlock) *Grid {
+	t.Helper()
+	g, err := New(schema.Physics{Format: schema.FormatPhysics}, axes, nil, nil)
+	if err != nil {
+		t.Fatal(err)
+	}
+	return g
+}
+
+func grids(t *testing.T) map[string]*Grid {
+	t.Helper()
+	rows := make([][]float64, 10_000)
+	for i := range rows {
+		rows[i] = []float64{float64(i), 1, 2, 3, 4}
+	}
+	list, err := New(schema.Physics{}, nil, []string{"a", "b", "c", "d", "e"}, rows)
+	if err != nil {
+		t.Fatal(err)
+	}
+	return map[string]*Grid{
+		"one point":  box(t),
+		"one axis":   box(t, axis("a", 9001)),
+		"short axis": box(t, axis("a", 3)),
+		"two axes":   box(t, axis("a", 130), axis("b", 71)),
+		"three axes": box(t, axis("a", 33), axis("b", 3), axis("c", 40)),
+		"five axes":  box(t, axis("a", 5), axis("b", 7), axis("c", 9), axis("d", 11), axis("e", 2)),
+		"rows":       list,
+	}
+}
+
+// TestTilesCoverThePoints checks that every point of the grid lies in one
+// tile, once, with the values that its number says.
+func TestTilesCoverThePoints(t *testing.T) {
+	for name, g := range grids(t) {
+		t.Run(name, func(t *testing.T) {
+			seen := make([]bool, g.Points())
+			var values []float64
+			for i := range g.Tiles() {
+				tile, block := g.Tile(i), g.Block(i)
+				if n := tile.Points(); n < 1 || n > TilePoints {
+					t.Fatalf("tile %d holds %d points", i, n)
+				}
+				for local := range tile.Points() {
+					p := g.Point(block, local)
+					if seen[p] {
+						t.Fatalf("point %d lies in two tiles", p)
+					}
+					seen[p] = true
+					values = tile.Values(local, values)
+					if want := valuesOf(g, p); !slices.Equal(values, want) {
+						t.Fatalf("point %d: values %v, expected %v", p, values, want)
+					}
+				}
+			}
+			if i := slices.Index(seen, false); i >= 0 {
+				t.Fatalf("point %d lies in no tile", i)
+			}
+		})
+	}
+}
+
+// valuesOf counts through the axes like an odometer.
+func valuesOf(g *Grid, point int) []float64 {
+	if !g.IsBox() {
+		return g.rows[point]
+	}
+	v := make([]float64, len(g.axes))
+	for a := len(g.axes) - 1; a >= 0; a-- {
+		n := len(g.axes[a].Values)
+		v[a] = g.axes[a].Values[point%n]
+		point /= n
+	}
+	return v
+}
+
+// TestBandsFollowThePoints checks that bands are consecutive runs of points
+// and of tiles and that the tiles of a band hold just its points.
+func TestBandsFollowThePoints(t *testing.T) {
+	for name, g := range grids(t) {
+		t.Run(name, func(t *testing.T) {
+			point, tile := 0, 0
+			for _, b := range g.Bands() {
+				if b.First != point || b.Tile != tile {
+					t.Fatalf("band starts at point %d, tile %d; expected %d, %d", b.First, b.Tile, point, tile)
+				}
+				held := 0
+				for i := b.Tile; i < b.Tile+b.Tiles; i++ {
+					block, n := g.Block(i), g.Tile(i).Points()
+					held += n
+					for local := range n {
+						if p := g.Point(block, local); p < b.First || p >= b.First+b.Points {
+							t.Fatalf("point %d lies outside its band", p)
+						}
+					}
+				}
+				if held != b.Points {
+					t.Fatalf("band of %d points, its tiles hold %d", b.Points, held)
+				}
+				point, tile = point+b.Points, tile+b.Tiles
+			}
+			if point != g.Points() || tile != g.Tiles() {
+				t.Fatalf("bands end at point %d, tile %d; expected %d, %d", point, tile, g.Points(), g.Tiles())
+			}
+		})
+	}
+}
+
+// TestGrownBoxKeepsTiles checks that a box which grows at the end of an axis
+// keeps the names of all tiles but those at the old end.
+func TestGrownBoxKeepsTiles(t *testing.T) {
+	small, grown := box(t, axis("a", 100), axis("b", 50)), box(t, axis("a", 140), axis("b", 50))
+	names := map[string]bool{}
+	for i := range grown.Tiles() {
+		names[nameOf(t, grown.Tile(i))] = true
+	}
+	kept := 0
+	for i := range small.Tiles() {
+		full := small.Block(i).Lo[0]+64 <= 100
+		has := names[nameOf(t, small.Tile(i))]
+		if full && !has {
+			t.Errorf("full tile %d changed its name", i)
+		}
+		if has {
+			kept++
+		}
+	}
+	if kept == 0 {
+		t.Fatal("no tile was kept")
+	}
+}
+
+func nameOf(t *testing.T, tile *schema.Tile) string {
+	t.Helper()
+	name, err := tile.Name()
+	if err != nil {
+		t.Fatal(err)
+	}
+	return name
+}
+
+func TestTooManyPoints(t *testing.T) {
+	long := axis("a", 40_000)
+	if _, err := New(schema.Physics{}, []schema.AxisBlock{long, long}, nil, nil); err == nil {
+		t.Fatal("1.6e9 points were accepted")
+	}
+}
+
+// TestFrequencyRange takes both ends from the definition of the vacuum
+// wavelength, f = c/L with c exact in the SI.
+func TestFrequencyRange(t *testing.T) {
+	g := box(t, schema.AxisBlock{Parameter: schema.Wavelength, Values: []float64{1.3e-6, 1.7e-6, 1.5e-6}})
+	lo, hi := g.FrequencyRange()
+	if want := 2 * math.Pi * 299792458 / 1.7e-6; math.Abs(lo/want-1) > 1e-15 {
+		t.Errorf("lowest %g, expected %g", lo, want)
+	}
+	if want := 2 * math.Pi * 299792458 / 1.3e-6; math.Abs(hi/want-1) > 1e-15 {
+		t.Errorf("highest %g, expected %g", hi, want)
+	}
+}
