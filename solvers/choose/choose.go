@@ -1,0 +1,20 @@
+package choose
+
+import (
+	"betaloom/schema"
+	"betaloom/solvers"
+)
+
+// New builds the problem of p with its equation, ready to be solved at any
+// point, and gives the reasons for the equation.
+func New(p *schema.Physics) (solvers.Problem, []string, error) {
+	c := Explain(p)
+	if c.Equation != Slab {
+		return nil, c.Reasons, &solvers.ScopeError{Section: c.Section, Equation: string(c.Equation)}
+	}
+	problem, err := newSlab(p)
+	if err != nil {
+		return nil, c.Reasons, err
+	}
+	return problem, c.Reasons, nil
+}
