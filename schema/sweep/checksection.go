@@ -27,7 +27,7 @@ const layersPath = "section.layers"
 // thickness between them.
 func (c *checker) checkLayers(l *schema.Layers) {
 	n := len(l.Layers)
-	least, ends := 3, "an open stack has a half-space, layers and a half-space"
+	least, ends := 2, "an open stack has a half-space at the bottom and one at the top"
 	switch {
 	case l.GroundBottom && l.GroundTop:
 		least, ends = 1, "a stack between two grounds has at least one layer"
