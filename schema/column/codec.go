@@ -2,6 +2,7 @@ package column
 
 import (
 	"fmt"
+	"sync"
 
 	"github.com/apache/arrow/go/v17/parquet/compress"
 	"github.com/klauspost/compress/zstd"
@@ -26,16 +27,17 @@ func (c codec) EncodeLevel(dst, src []byte, level int) []byte {
 	return c.encoder.EncodeAll(src, dst[:0])
 }
 
-// init is where the library asks for a codec to be registered: its table is read
-// without a lock.
-func init() {
+// useCodec registers the codec, once. The library's table of codecs is read
+// without a lock, so every Writer calls this before it uses the library.
+var useCodec = sync.OnceValue(func() error {
 	own, err := compress.GetCodec(compress.Codecs.Zstd)
 	if err != nil {
-		panic(fmt.Sprintf("column: %v", err))
+		return fmt.Errorf("column: %w", err)
 	}
 	encoder, err := zstd.NewWriter(nil, zstd.WithZeroFrames(true), zstd.WithEncoderLevel(zstd.SpeedFastest), zstd.WithWindowSize(1<<20))
 	if err != nil {
-		panic(fmt.Sprintf("column: %v", err))
+		return fmt.Errorf("column: %w", err)
 	}
 	compress.RegisterCodec(compress.Codecs.Zstd, codec{own, encoder})
-}
+	return nil
+})

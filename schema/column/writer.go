@@ -41,6 +41,9 @@ type Writer struct {
 
 // NewWriter starts a file of these columns.
 func NewWriter(out io.Writer, columns []Column, o Options) (*Writer, error) {
+	if err := useCodec(); err != nil {
+		return nil, err
+	}
 	s := Schema(columns, o.Meta)
 	props := properties(columns, o)
 	root, err := pqarrow.ToParquet(s, props, pqarrow.DefaultWriterProps())
