@@ -1,0 +1,35 @@
+package worker
+
+import (
+	"slices"
+
+	"betaloom/schema/part"
+	"betaloom/solvers"
+)
+
+// convert appends the rows of modes to rows. They share the modes' memory.
+func convert(rows []part.Mode, modes []solvers.Mode) []part.Mode {
+	for i := range modes {
+		rows = append(rows, part.Mode(modes[i]))
+	}
+	return rows
+}
+
+// memory keeps the modes of a point after the solver has gone on to the
+// next. Its slices are used again.
+type memory struct {
+	modes []solvers.Mode
+}
+
+func (k *memory) keep(modes []solvers.Mode) {
+	kept := slices.Grow(k.modes[:0], len(modes))[:len(modes)]
+	for i, m := range modes {
+		old := kept[i]
+		m.DNeff = append(old.DNeff[:0], m.DNeff...)
+		m.DNg = append(old.DNg[:0], m.DNg...)
+		m.Confinement = append(old.Confinement[:0], m.Confinement...)
+		m.Flags = append(old.Flags[:0], m.Flags...)
+		kept[i] = m
+	}
+	k.modes = kept
+}
