@@ -219,3 +219,33 @@ func TestMetalLayer(t *testing.T) {
 		t.Errorf("found %v, expected an input error", err)
 	}
 }
+
+// TestFourFilms holds a stack to the effective indices that Chilwell and
+// Hodgkinson, J. Opt. Soc. Am. A 1, 742 (1984), give for it: films of 1.66,
+// 1.60, 1.53 and 1.66, each 0.5 um, on 1.5 under air at 632.8 nm. The values
+// are from memory, six decimals; the tolerance is five of the last one.
+func TestFourFilms(t *testing.T) {
+	p := film()
+	p.Materials = map[string]schema.Material{
+		"on": {Index: number(1.5)}, "a": {Index: number(1.66)}, "b": {Index: number(1.60)}, "c": {Index: number(1.53)}, "air": {Index: number(1)},
+	}
+	p.Modes = 10
+	p.Section.Layers.Layers = []schema.Layer{{Material: "on"}}
+	for _, m := range []string{"a", "b", "c", "a"} {
+		p.Section.Layers.Layers = append(p.Section.Layers.Layers, schema.Layer{Material: m, Thickness: number(0.5 * um)})
+	}
+	p.Section.Layers.Layers = append(p.Section.Layers.Layers, schema.Layer{Material: "air"})
+	want := map[string]float64{
+		"TE0": 1.622729, "TE1": 1.605276, "TE2": 1.557136, "TE3": 1.503587,
+		"TM0": 1.620031, "TM1": 1.594788, "TM2": 1.554982, "TM3": 1.501821,
+	}
+	modes := solve(t, p, omega(0.6328*um), um)
+	if len(modes) != len(want) {
+		t.Fatalf("%d modes, expected %d", len(modes), len(want))
+	}
+	for _, m := range modes {
+		if math.Abs(m.Neff-want[m.Family]) > 5e-6 {
+			t.Errorf("%s: found %.7f, expected %.6f", m.Family, m.Neff, want[m.Family])
+		}
+	}
+}
