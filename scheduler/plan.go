@@ -1,11 +1,13 @@
 package scheduler
 
 import (
+	"encoding/json"
 	"errors"
 	"fmt"
 
 	"betaloom/scheduler/grid"
 	"betaloom/schema"
+	"betaloom/schema/queue"
 	"betaloom/schema/sweep"
 	"betaloom/solvers"
 	"betaloom/solvers/choose"
@@ -38,7 +40,34 @@ func NewPlan(file string, sw *sweep.Sweep) (*Plan, error) {
 		return nil, sweep.Diagnostics{diagnose(file, sw, "section", input.Where+": "+input.Found, input.Expected)}
 	}
 	p.Reasons = reasons
-	return p, err
+	if err != nil {
+		return nil, err
+	}
+	return p, p.checkMessage(file, sw)
+}
+
+// roomForRun is what a job message holds besides its tile: run and name.
+const roomForRun = 4096
+
+// checkMessage sees that a tile fits into a message, which its tables may
+// be too long for: a tile needs nothing outside itself, so it carries them.
+func (p *Plan) checkMessage(file string, sw *sweep.Sweep) error {
+	b, err := json.Marshal(p.Grid.Tile(0)) // no tile of a grid is larger
+	if err != nil {
+		return fmt.Errorf("tile: %w", err)
+	}
+	if len(b)+roomForRun <= queue.MaxJob {
+		return nil
+	}
+	longest, rows := "", 0
+	for _, name := range used(&sw.Physics) {
+		if t := sw.Physics.Materials[name].Table; t != nil && len(t.N) > rows {
+			longest, rows = name, len(t.N)
+		}
+	}
+	return sweep.Diagnostics{diagnose(file, sw, "materials."+longest,
+		fmt.Sprintf("a table of %d rows, with which a tile takes %d bytes", rows, len(b)),
+		fmt.Sprintf("tiles of at most %d bytes, the most that a message of the queue holds: a table of fewer rows serves as well, since it is fitted", queue.MaxJob-roomForRun))}
 }
 
 func diagnose(file string, sw *sweep.Sweep, path, found, expected string) sweep.Diagnostic {

@@ -2,6 +2,7 @@ package scheduler_test
 
 import (
 	"errors"
+	"fmt"
 	"io"
 	"math"
 	"strings"
@@ -117,5 +118,27 @@ func TestEstimate(t *testing.T) {
 	}
 	if values := 10_000 * one.ModesPerPoint * 30; one.DiskBytes < int64(8*values) || math.IsInf(one.PointsPerSecond, 0) {
 		t.Errorf("found %d bytes, expected at least those of thirty columns", one.DiskBytes)
+	}
+}
+
+// TestPlanRefusesLongTables: a tile carries its tables, and a message of the
+// queue holds 1 MiB (the default limit of NATS).
+func TestPlanRefusesLongTables(t *testing.T) {
+	var table strings.Builder
+	table.WriteString("wavelength_um,n\n")
+	for i := range 60_000 {
+		fmt.Fprintf(&table, "%.5f,%.8f\n", 1+1e-5*float64(i), 2+1e-6*float64(i))
+	}
+	src := strings.NewReplacer("FILM", "{table: long.csv}", "WAVE", "1.5 um").Replace(film)
+	sw, err := sweep.Parse("film.yaml", []byte(src), func(string) (io.ReadCloser, error) {
+		return io.NopCloser(strings.NewReader(table.String())), nil
+	})
+	if err != nil {
+		t.Fatal(err)
+	}
+	_, err = scheduler.NewPlan("film.yaml", sw)
+	var d sweep.Diagnostics
+	if !errors.As(err, &d) || len(d) != 1 || !strings.HasPrefix(d[0].String(), "film.yaml:4:3: materials.film: found a table of 60000 rows") {
+		t.Errorf("found %v, expected a diagnostic of the long table", err)
 	}
 }

@@ -13,7 +13,8 @@ type Problem interface {
 	// highest Re neff down, ties by symmetry and then by family. near may
 	// hold the modes of a neighbouring point to start from. Count is the number of all
 	// guided modes, however many were asked for. The modes share the
-	// Problem's work space and last until the next call.
+	// Problem's work space and last until the next call. What was asked before
+	// changes nothing: the same q, want and near give the same bits.
 	Modes(ctx context.Context, q Q, want int, near []Mode) ([]Mode, Count, error)
 }
 

@@ -1,7 +1,9 @@
 package worker
 
 import (
+	"bytes"
 	"context"
+	"encoding/json"
 	"errors"
 	"fmt"
 	"runtime/debug"
@@ -24,11 +26,12 @@ func (e *PanicError) Error() string { return fmt.Sprintf("the solver panicked: %
 func (s *slot) solve(ctx context.Context, job *queue.Job) (encoded []byte, c Counts, err error) {
 	defer func() {
 		if v := recover(); v != nil {
+			s.kept = kept{}
 			err = &PanicError{Value: v, Stack: debug.Stack()}
 		}
 	}()
 	physics := &job.Tile.Physics
-	problem, _, err := s.Problem(physics)
+	problem, err := s.problem(physics)
 	if err != nil {
 		return nil, Counts{}, err
 	}
@@ -44,6 +47,31 @@ func (s *slot) solve(ctx context.Context, job *queue.Job) (encoded []byte, c Cou
 	}
 	encoded, err = t.part.Encode(job.Name)
 	return encoded, t.counts, err
+}
+
+// kept is the problem of the tile before. The tiles of a run have the same
+// physics, and to compile it may mean to fit long tables; the answers of a
+// problem do not depend on what it was asked before.
+type kept struct {
+	physics []byte
+	problem solvers.Problem
+}
+
+// problem gives the problem of a tile's physics.
+func (s *slot) problem(physics *schema.Physics) (solvers.Problem, error) {
+	key, err := json.Marshal(physics)
+	if err != nil {
+		return nil, fmt.Errorf("physics: %w", err)
+	}
+	if s.kept.problem != nil && bytes.Equal(s.kept.physics, key) {
+		return s.kept.problem, nil
+	}
+	problem, _, err := s.Problem(physics)
+	if err != nil {
+		return nil, err
+	}
+	s.kept = kept{key, problem}
+	return problem, nil
 }
 
 // tile is a tile while it is solved.

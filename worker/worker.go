@@ -24,7 +24,8 @@ type Options struct {
 	// with each further one, up to a minute. 0: 1 s.
 	RetryDelay time.Duration
 
-	// Problem makes the problem of a tile; nil: choose.New. Each tile gets its own.
+	// Problem makes the problem of a tile's physics; nil: choose.New. A slot
+	// keeps it for the next tile of the same physics.
 	Problem func(p *schema.Physics) (solvers.Problem, []string, error)
 
 	// Events, where set, hears what the worker does. It is called by all slots
@@ -93,6 +94,7 @@ func Run(ctx context.Context, o Options) error {
 type slot struct {
 	Options
 	number int
+	kept   kept
 }
 
 // takePause is how long a slot waits after the queue could not be reached.

@@ -438,3 +438,22 @@ func TestBadOptions(t *testing.T) {
 		})
 	}
 }
+
+// TestProblemIsKept: a problem is made once for tiles of the same physics, and
+// anew for others.
+func TestProblemIsKept(t *testing.T) {
+	one, two := box([]float64{1.5e-6}, []float64{1e-6}), box([]float64{1.6e-6}, []float64{1e-6})
+	other := box([]float64{1.5e-6}, []float64{1e-6})
+	other.Physics.Modes++
+	made := 0
+	o := worker.Options{Store: folder(t), Slots: 1, Problem: func(p *schema.Physics) (solvers.Problem, []string, error) {
+		made++
+		return fakeProblem(p)
+	}}
+	if _, err := work(t, o, &delivery{message: message(t, one)}, &delivery{message: message(t, two)}, &delivery{message: message(t, other)}); err != nil {
+		t.Fatal(err)
+	}
+	if made != 2 {
+		t.Errorf("%d problems were made, expected 2", made)
+	}
+}

@@ -3,9 +3,10 @@
 // A grid is either a box, the product of its axes with the last varying
 // fastest, or a list of rows. Points are numbered from 0 in that order over
 // the whole grid; inside a tile they are numbered from 0 in the same order
-// (local). Tiles are blocks of a fixed edge aligned to the start of each
-// axis, so that a box which grows at its end keeps its inner tiles, and with
-// them their names and parts. Nothing of the size of the grid is kept in memory.
+// (local). Tiles are blocks aligned to the start of each axis, whose edges do
+// not depend on how long a long axis is: a box that grows at its end
+// keeps its inner tiles, and with them their names and parts. Nothing of the
+// size of the grid is kept in memory.
 package grid
 
 import (
@@ -29,7 +30,7 @@ type Grid struct {
 	axes    []schema.AxisBlock
 	columns []string
 	rows    [][]float64
-	edge    int   // of a block, in points along an axis
+	edges   []int // of a block, in points along each axis
 	blocks  []int // blocks along each axis
 }
 
@@ -50,27 +51,42 @@ func New(p schema.Physics, axes []schema.AxisBlock, columns []string, rows [][]f
 	if total > MaxPoints {
 		return nil, fmt.Errorf("grid: %.3g points, at most %d are accepted", total, MaxPoints)
 	}
-	g.edge = edge(axes)
-	for _, a := range axes {
-		g.blocks = append(g.blocks, (len(a.Values)+g.edge-1)/g.edge)
+	g.edges = edges(axes)
+	for i, a := range axes {
+		g.blocks = append(g.blocks, (len(a.Values)+g.edges[i]-1)/g.edges[i])
 	}
 	return g, nil
 }
 
-// edge is the largest power of two whose block holds at most TilePoints.
-func edge(axes []schema.AxisBlock) int {
-	e := 1
-	for e < TilePoints {
-		points := 1
-		for _, a := range axes {
-			points *= min(2*e, len(a.Values))
+// shortAxis is the most values of an axis that a block spans whole.
+const shortAxis = 8
+
+// edges gives a block's length along each axis. Short axes are spanned whole,
+// the last first and as many as fit; the others share the largest power of two
+// with which a block holds at most TilePoints. That does not depend on how long
+// they are, so one that grows keeps its blocks; when a short axis grows, every
+// block grows with it, and no tile could be kept anyway.
+func edges(axes []schema.AxisBlock) []int {
+	list, points, long := make([]int, len(axes)), 1, 0
+	for a := len(axes) - 1; a >= 0; a-- {
+		n := len(axes[a].Values)
+		if n <= shortAxis && points*n <= TilePoints {
+			list[a] = n
+			points *= n
+		} else {
+			long++
 		}
-		if points > TilePoints {
-			break
-		}
-		e *= 2
 	}
-	return e
+	edge := 1
+	for long > 0 && float64(points)*math.Pow(float64(2*edge), float64(long)) <= TilePoints {
+		edge *= 2
+	}
+	for a := range list {
+		if list[a] == 0 {
+			list[a] = edge
+		}
+	}
+	return list
 }
 
 // rowsPerTile bounds a stretch by what its job message may weigh.
@@ -129,8 +145,8 @@ func (g *Grid) Block(i int) Block {
 	}
 	b := Block{Lo: make([]int, len(g.axes)), N: make([]int, len(g.axes))}
 	for a := len(g.axes) - 1; a >= 0; a-- {
-		b.Lo[a] = i % g.blocks[a] * g.edge
-		b.N[a] = min(g.edge, len(g.axes[a].Values)-b.Lo[a])
+		b.Lo[a] = i % g.blocks[a] * g.edges[a]
+		b.N[a] = min(g.edges[a], len(g.axes[a].Values)-b.Lo[a])
 		i /= g.blocks[a]
 	}
 	return b
@@ -191,8 +207,8 @@ func (g *Grid) Bands() []Band {
 	}
 	var bands []Band
 	for k := range g.blocks[0] {
-		depth := min(g.edge, len(g.axes[0].Values)-k*g.edge)
-		bands = append(bands, Band{First: k * g.edge * stride, Points: depth * stride, Tile: k * per, Tiles: per})
+		depth := min(g.edges[0], len(g.axes[0].Values)-k*g.edges[0])
+		bands = append(bands, Band{First: k * g.edges[0] * stride, Points: depth * stride, Tile: k * per, Tiles: per})
 	}
 	return bands
 }

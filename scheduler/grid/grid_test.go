@@ -42,6 +42,7 @@ func grids(t *testing.T) map[string]*Grid {
 		"two axes":   box(t, axis("a", 130), axis("b", 71)),
 		"three axes": box(t, axis("a", 33), axis("b", 3), axis("c", 40)),
 		"five axes":  box(t, axis("a", 5), axis("b", 7), axis("c", 9), axis("d", 11), axis("e", 2)),
+		"many short": box(t, axis("a", 2), axis("b", 3), axis("c", 8), axis("d", 8), axis("e", 8), axis("f", 5)),
 		"rows":       list,
 	}
 }
@@ -126,24 +127,28 @@ func TestBandsFollowThePoints(t *testing.T) {
 // TestGrownBoxKeepsTiles checks that a box which grows at the end of an axis
 // keeps the names of all tiles but those at the old end.
 func TestGrownBoxKeepsTiles(t *testing.T) {
-	small, grown := box(t, axis("a", 100), axis("b", 50)), box(t, axis("a", 140), axis("b", 50))
-	names := map[string]bool{}
-	for i := range grown.Tiles() {
-		names[nameOf(t, grown.Tile(i))] = true
-	}
-	kept := 0
-	for i := range small.Tiles() {
-		full := small.Block(i).Lo[0]+64 <= 100
-		has := names[nameOf(t, small.Tile(i))]
-		if full && !has {
-			t.Errorf("full tile %d changed its name", i)
-		}
-		if has {
-			kept++
-		}
-	}
-	if kept == 0 {
-		t.Fatal("no tile was kept")
+	for name, lengths := range map[string][3]int{"twice": {100, 50, 200}, "beside a short axis": {2100, 3, 5000}, "from one tile's share": {130, 9, 131}} {
+		t.Run(name, func(t *testing.T) {
+			small := box(t, axis("a", lengths[0]), axis("b", lengths[1]))
+			grown := box(t, axis("a", lengths[2]), axis("b", lengths[1]))
+			names := map[string]bool{}
+			for i := range grown.Tiles() {
+				names[nameOf(t, grown.Tile(i))] = true
+			}
+			kept := 0
+			for i := range small.Tiles() {
+				has := names[nameOf(t, small.Tile(i))]
+				if b := small.Block(i); b.N[0] == small.edges[0] && !has {
+					t.Errorf("full tile %d changed its name", i)
+				}
+				if has {
+					kept++
+				}
+			}
+			if kept == 0 {
+				t.Fatal("no tile was kept")
+			}
+		})
 	}
 }
 
