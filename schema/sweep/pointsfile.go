@@ -45,7 +45,7 @@ func (pointsFile) describe() fragment {
 	return fragment{"type": "string", "minLength": 1}
 }
 
-const headerRule = "the name of a parameter and its unit in brackets, such as width [um]; of a pure number the name alone"
+const headerRule = "the name of a parameter and its unit, such as width [um] or width_um; of a pure number the name alone"
 
 func (s *sheet) pointsHeader(p *points) ([]scale, bool) {
 	head, ok := s.next()
@@ -72,11 +72,13 @@ func (s *sheet) pointsHeader(p *points) ([]scale, bool) {
 	return units, s.faults == 0
 }
 
-// splitHeader takes "width [um]" apart.
+// splitHeader takes "width [um]" or "width_um" apart. Without brackets the
+// last word is a unit if it can be that of a length, a frequency, an angle or a temperature, as
+// in the columns of the tables.
 func splitHeader(text string) (name string, unit quantity.Unit, err error) {
 	name, rest, found := strings.Cut(text, "[")
 	if !found {
-		return name, unit, nil
+		return splitColumn(name)
 	}
 	inside, after, closed := strings.Cut(rest, "]")
 	if !closed || after != "" {
@@ -84,6 +86,27 @@ func splitHeader(text string) (name string, unit quantity.Unit, err error) {
 	}
 	unit, err = quantity.ParseUnit(strings.TrimSpace(inside))
 	return strings.TrimSpace(name), unit, err
+}
+
+func splitColumn(text string) (name string, unit quantity.Unit, err error) {
+	at := strings.LastIndexByte(text, '_')
+	if at <= 0 {
+		return text, unit, nil
+	}
+	suffix := text[at+1:]
+	if suffix == "hz" { // as the tables write it
+		suffix = "Hz"
+	}
+	u, err := quantity.ParseUnit(suffix)
+	if err != nil || !columnUnits[u.Dimension] {
+		return text, unit, nil
+	}
+	return text[:at], u, nil
+}
+
+// columnUnits are the kinds of unit that a column's name may end in.
+var columnUnits = map[schema.Dimension]bool{
+	{Length: 1}: true, {Time: -1}: true, {Angle: 1}: true, {Temperature: 1}: true,
 }
 
 func (s *sheet) pointsRows(p *points, units []scale) {

@@ -1,7 +1,9 @@
 package sweep_test
 
 import (
+	"io"
 	"math"
+	"strings"
 	"testing"
 
 	"betaloom/schema"
@@ -104,6 +106,33 @@ func TestPoints(t *testing.T) {
 	equal(t, len(s.Axes), 0)
 	equal(t, s.Physics.Section.Layers.GroundBottom && s.Physics.Section.Layers.GroundTop, true)
 	equal(t, s.Physics.Materials["film"].ReferenceTemperature, literal(293.15))
+}
+
+// TestPointsHeaders: a unit may stand in brackets or, as in the tables' own
+// columns, at the end of the name; what is no such unit belongs to the name.
+func TestPointsHeaders(t *testing.T) {
+	src := "format: 1\nsweep: film\nmaterials: {film: {index: 2}, glass: {index: 1.45}}\npoints: {file: p.csv}\n" +
+		"section: {layers: [{material: glass}, {material: film, thickness: height}, {material: glass}]}\n"
+	for head, want := range map[string][]string{
+		"wavelength_um,height_nm":                     {"wavelength", "height"},
+		"frequency_hz,height_m,index_shift":           {"frequency", "height", "index_shift"},
+		"frequency_THz,height [mm],tilt_deg":          {"frequency", "height", "tilt"},
+		"wavelength [m],height_um,temperature_K,n_s":  {"wavelength", "height", "temperature", "n_s"},
+		"wavelength_m,height_um,width_in [um],temp_1": {"wavelength", "height", "width_in", "temp_1"},
+	} {
+		t.Run(head, func(t *testing.T) {
+			row := strings.TrimSuffix(strings.Repeat("1,", len(want)), ",")
+			s, err := sweep.Parse("film.yaml", []byte(src), func(string) (io.ReadCloser, error) {
+				return io.NopCloser(strings.NewReader(head + "\n" + row + "\n")), nil
+			})
+			if err != nil {
+				t.Fatal(err)
+			}
+			equal(t, s.Columns, want)
+			height, _ := s.Physics.Parameter("height")
+			equal(t, height.Dimension, schema.Dimension{Length: 1})
+		})
+	}
 }
 
 // TestAt: errors that are found later point into the file.

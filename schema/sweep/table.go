@@ -48,7 +48,7 @@ func (r *reader) table(path, name string) (*schema.Table, bool) {
 		r.fault(path, fmt.Sprintf("tables of more than %d bytes in all", MaxTables), "tables within that")
 		return nil, false
 	}
-	head, ok := s.next()
+	head, _ := s.next() // an empty file has no header, which is told next
 	columns := header(head)
 	if columns != "wavelength_um,n" && columns != "wavelength_um,n,k" {
 		s.faultFile("the header "+quote(columns), "wavelength_um,n or wavelength_um,n,k")
