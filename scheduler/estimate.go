@@ -2,12 +2,11 @@ package scheduler
 
 import (
 	"context"
-	"math"
 	"time"
 
 	"betaloom/scheduler/grid"
-	"betaloom/schema"
 	"betaloom/schema/column"
+	"betaloom/schema/point"
 	"betaloom/solvers"
 	"betaloom/solvers/choose"
 )
@@ -29,8 +28,8 @@ const (
 )
 
 // Estimate solves a few points spread over the grid, for a quarter of a
-// second at most, and scales up. A point that fails counts as one without
-// modes.
+// second at most, and scales up. A point that fails or is left out by keep
+// counts as one without modes.
 func (p *Plan) Estimate(ctx context.Context, workers int) (Estimate, error) {
 	problem, _, err := choose.New(p.Grid.Physics())
 	if err != nil {
@@ -42,20 +41,33 @@ func (p *Plan) Estimate(ctx context.Context, workers int) (Estimate, error) {
 		if k == 0 {
 			begun = time.Now() // the first one warms up
 		}
-		q := sample(p.Grid, max(k, 0))
-		modes, _, err := problem.Modes(ctx, q, p.Grid.Physics().Modes, nil)
-		if ctx.Err() != nil {
-			return Estimate{}, ctx.Err()
+		n, err := p.try(ctx, problem, max(k, 0))
+		if err != nil {
+			return Estimate{}, err
 		}
-		if k < 0 {
-			continue
-		}
-		points++
-		if err == nil {
-			rows += len(modes)
+		if k >= 0 {
+			points++
+			rows += n
 		}
 	}
 	return p.scale(points, rows, time.Since(begun), workers), nil
+}
+
+// try solves the k-th sample point and counts its modes. An error is not of
+// the point.
+func (p *Plan) try(ctx context.Context, problem solvers.Problem, k int) (modes int, err error) {
+	q, ok, err := sample(p.Grid, k)
+	if err != nil || !ok {
+		return 0, err
+	}
+	list, _, err := problem.Modes(ctx, q, p.Grid.Physics().Modes, nil)
+	if ctx.Err() != nil {
+		return 0, ctx.Err()
+	}
+	if err != nil {
+		return 0, nil
+	}
+	return len(list), nil
 }
 
 func (p *Plan) scale(points, rows int, took time.Duration, workers int) Estimate {
@@ -72,32 +84,14 @@ func (p *Plan) scale(points, rows int, took time.Duration, workers int) Estimate
 	return e
 }
 
-// sample gives the k-th of the points to try.
-func sample(g *grid.Grid, k int) solvers.Q {
+// sample gives the k-th of the points to try; ok is false where keep leaves it
+// out or its parameters cannot be evaluated.
+func sample(g *grid.Grid, k int) (q solvers.Q, ok bool, err error) {
 	t := g.Tile(k * g.Tiles() / samplePoints)
-	values := make(map[string]float64)
-	for _, q := range g.Physics().Parameters {
-		if q.Kind == schema.Fixed {
-			values[q.Name] = q.Value
-		}
+	points, err := point.New(t)
+	if err != nil {
+		return nil, false, err
 	}
-	local := k * 7919 % t.Points() // a prime, so that samples of one tile differ along every axis
-	row := t.Values(local, nil)
-	for i, name := range t.Varying() {
-		values[name] = row[i]
-	}
-	return point(g.Physics(), values)
-}
-
-func point(p *schema.Physics, values map[string]float64) solvers.Q {
-	q := solvers.Q{math.NaN()}
-	for name, v := range values {
-		if w, ok := grid.AngularFrequency(name, v); ok {
-			q[0] = w
-		}
-	}
-	for _, name := range p.Base() {
-		q = append(q, values[name])
-	}
-	return q
+	keep, bad := points.At(k * 7919 % t.Points()) // a prime, so that samples of one tile differ along every axis
+	return points.Q, keep && bad == nil, nil
 }

@@ -13,14 +13,16 @@ import (
 
 	"github.com/google/uuid"
 
+	"betaloom/scheduler/collate"
 	"betaloom/scheduler/grid"
+	"betaloom/scheduler/report"
 	"betaloom/schema"
 	"betaloom/schema/store"
 	"betaloom/schema/sweep"
 )
 
 // FolderError says that a folder is not this sweep's. Nothing in it was
-// changed.
+// changed; the file of its lock may be new.
 type FolderError struct {
 	Dir, Found, Expected string
 }
@@ -106,6 +108,9 @@ func (f *folder) begin(ctx context.Context, o *Options, plan *Plan) error {
 func (f *folder) adopt(sw *sweep.Sweep) error {
 	r, err := ReadRecord(f.dir)
 	if errors.Is(err, fs.ErrNotExist) {
+		if err := f.checkUnused(); err != nil {
+			return err
+		}
 		id, err := uuid.NewV7()
 		f.record = &Record{
 			Format: FormatFolder, ID: id.String(), Sweep: sw.Name, Physics: schema.FormatPhysics, Started: time.Now().UTC(),
@@ -122,6 +127,17 @@ func (f *folder) adopt(sw *sweep.Sweep) error {
 		return &FolderError{Dir: f.dir, Found: fmt.Sprintf("parts of format %d", r.Physics), Expected: fmt.Sprintf("format %d", schema.FormatPhysics)}
 	}
 	f.record = r
+	return nil
+}
+
+// checkUnused refuses a folder without a record that holds what a run would
+// remove or replace. It cannot be a run's: the record is written first.
+func (f *folder) checkUnused() error {
+	for _, name := range []string{folderQueue, fileProgress, fileGrid, collate.PointsFile, collate.ModesFile, collate.SurfacesFile, report.Name} {
+		if exists(f.path(name)) {
+			return &FolderError{Dir: f.dir, Found: name + " and no " + fileRun, Expected: "an empty folder or that of a run"}
+		}
+	}
 	return nil
 }
 

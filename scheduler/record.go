@@ -65,6 +65,8 @@ type Record struct {
 
 	Tables *Tables          `json:"tables,omitempty"` // nil: not collated yet
 	Result *collate.Summary `json:"result,omitempty"` // of the tables: counts, accuracy reached
+
+	Reported string `json:"reported,omitempty"` // Tables.From of those that the run's report shows
 }
 
 // Tables says what the tables in a folder were made from.

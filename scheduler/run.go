@@ -107,7 +107,8 @@ func (r *run) drop(ctx context.Context, damaged *collate.CorruptError) error {
 
 // report writes the report, unless it was written for these tables.
 func (r *run) report(ctx context.Context) error {
-	if r.out.UpToDate && exists(r.folder.path(report.Name)) {
+	record := r.folder.record
+	if r.out.UpToDate && record.Reported == record.Tables.From && exists(r.folder.path(report.Name)) {
 		return nil
 	}
 	r.out.UpToDate = false
@@ -119,7 +120,7 @@ func (r *run) report(ctx context.Context) error {
 	if err := r.Report(ctx, r.Dir); err != nil {
 		return fmt.Errorf("report: %w", err)
 	}
-	r.folder.record.ReportSeconds = time.Since(begun).Seconds()
+	record.ReportSeconds, record.Reported = time.Since(begun).Seconds(), record.Tables.From
 	return nil
 }
 

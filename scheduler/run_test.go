@@ -312,6 +312,60 @@ func TestForeignFolder(t *testing.T) {
 	}
 }
 
+// A folder that is no run's is left alone, whatever of a run's names it holds.
+func TestFolderOfSomethingElse(t *testing.T) {
+	for _, name := range []string{"queue/mine.txt", "grid.json", "modes.parquet", "report.html"} {
+		t.Run(name, func(t *testing.T) {
+			dir := t.TempDir()
+			path := filepath.Join(dir, name)
+			if err := errors.Join(os.MkdirAll(filepath.Dir(path), 0o755), os.WriteFile(path, []byte("mine"), 0o644)); err != nil {
+				t.Fatal(err)
+			}
+			before := files(t, dir)
+			_, err := scheduler.Run(t.Context(), options(dir, question(), &answers{}))
+			var foreign *scheduler.FolderError
+			if !errors.As(err, &foreign) || !strings.Contains(err.Error(), "and no run.json") {
+				t.Errorf("found %v, expected a refusal", err)
+			}
+			after := files(t, dir)
+			delete(after, ".lock")
+			if fmt.Sprint(after) != fmt.Sprint(before) {
+				t.Error("found a folder that was changed all the same")
+			}
+		})
+	}
+}
+
+// A process that ends between the tables and the report leaves the report of
+// the tables before: it is written anew.
+func TestReportOfOldTables(t *testing.T) {
+	dir := t.TempDir()
+	finish(t, options(dir, question(), &answers{}))
+	small := question()
+	small.Axes[0].Values = small.Axes[0].Values[:32]
+	o := options(dir, small, &answers{})
+	ctx, cancel := within(t)
+	o.Report = func(context.Context, string) error {
+		cancel()
+		return ctx.Err()
+	}
+	if out, err := scheduler.Run(ctx, o); err != nil || !out.Interrupted {
+		t.Fatalf("found %+v, %v, expected an interruption at the report", out, err)
+	}
+	written := 0
+	o = options(dir, small, &answers{})
+	o.Report = func(context.Context, string) error {
+		written++
+		return nil
+	}
+	for range 2 {
+		finish(t, o)
+		if written != 1 {
+			t.Errorf("found the report written %d times, expected once", written)
+		}
+	}
+}
+
 // Two runs in one folder: the second is refused, the first goes on.
 func TestOneRunAtATime(t *testing.T) {
 	dir := t.TempDir()

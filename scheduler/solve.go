@@ -2,7 +2,6 @@ package scheduler
 
 import (
 	"context"
-	"encoding/json"
 	"errors"
 	"fmt"
 	"time"
@@ -70,11 +69,7 @@ func (r *run) setAside(ctx context.Context, numbers []int) error {
 			Tile: r.tiles.names[i], Attempts: r.Queue.MaxDeliver,
 			Reason: fmt.Sprintf("no worker answered in %d attempts: each was ended or cut off while it solved the tile", r.Queue.MaxDeliver),
 		}
-		b, err := json.MarshalIndent(a, "", "  ")
-		if err == nil {
-			err = r.folder.store.Put(ctx, store.Aside(a.Tile), append(b, '\n'))
-		}
-		if err != nil {
+		if err := store.PutAside(ctx, r.folder.store, a); err != nil {
 			return err
 		}
 	}

@@ -2,7 +2,6 @@ package scheduler
 
 import (
 	"context"
-	"encoding/json"
 	"fmt"
 	"iter"
 
@@ -39,25 +38,11 @@ type have struct {
 }
 
 func (t *tiles) have(ctx context.Context) (h have, err error) {
-	if h.parts, err = listTiles(ctx, t.store, "parts/"); err != nil {
+	if h.parts, err = store.Tiles(ctx, t.store, "parts/"); err != nil {
 		return h, err
 	}
-	h.aside, err = listTiles(ctx, t.store, "aside/")
+	h.aside, err = store.Tiles(ctx, t.store, "aside/")
 	return h, err
-}
-
-func listTiles(ctx context.Context, s store.Store, prefix string) (map[string]bool, error) {
-	names, err := s.List(ctx, prefix)
-	if err != nil {
-		return nil, err
-	}
-	set := make(map[string]bool, len(names))
-	for _, name := range names {
-		if tile, ok := store.Tile(name); ok {
-			set[tile] = true
-		}
-	}
-	return set, nil
 }
 
 // missing lists the tiles, by their number, with neither a part nor a record
@@ -79,15 +64,10 @@ func (t *tiles) aside(ctx context.Context, h have) ([]store.SetAside, error) {
 		if !h.aside[name] || h.parts[name] {
 			continue
 		}
-		b, err := t.store.Get(ctx, store.Aside(name))
+		a, err := store.GetAside(ctx, t.store, name)
 		if err != nil {
 			return nil, err
 		}
-		var a store.SetAside
-		if json.Unmarshal(b, &a) != nil || a.Reason == "" {
-			a.Reason = "its record does not say why"
-		}
-		a.Tile = name
 		list = append(list, a)
 	}
 	return list, nil

@@ -7,7 +7,7 @@
 // tile. All numbers are in SI units with angles in radians.
 //
 // The packages below it own the sweep file (sweep), units (quantity),
-// expressions (expr), table columns (column), part files (part), the queue
-// (queue) and the store (store). None of them imports anything of ours from
+// expressions (expr), the parameters of points (point), table columns
+// (column), part files (part), the queue (queue) and the store (store). None of them imports anything of ours from
 // outside schema.
 package schema

@@ -2,7 +2,6 @@ package worker
 
 import (
 	"context"
-	"encoding/json"
 	"errors"
 	"fmt"
 	"time"
@@ -92,10 +91,11 @@ func (s *slot) answer(ctx context.Context, d queue.Delivery, r result) error {
 func (s *slot) record(ctx context.Context, v verdict, d queue.Delivery, r result) error {
 	switch v {
 	case setAside:
-		return s.put(ctx, store.Aside(r.tile), store.SetAside{Tile: r.tile, Reason: r.err.Error(), Attempts: d.Attempt()})
+		return storeFailure(store.PutAside(ctx, s.Store, store.SetAside{Tile: r.tile, Reason: r.err.Error(), Attempts: d.Attempt()}))
 	case refuse:
 		m := d.Message()
-		return s.put(ctx, store.Refused(queue.ID(m)), refused{Reason: r.err.Error(), Bytes: len(m), Begins: m[:min(len(m), refusedBytes)]})
+		record := refused{Reason: r.err.Error(), Bytes: len(m), Begins: m[:min(len(m), refusedBytes)]}
+		return storeFailure(store.PutJSON(ctx, s.Store, store.Refused(queue.ID(m)), record))
 	}
 	return nil
 }
@@ -108,14 +108,6 @@ type refused struct {
 	Reason string `json:"reason"`
 	Bytes  int    `json:"bytes"`
 	Begins []byte `json:"begins"` // its first bytes, in base64
-}
-
-func (s *slot) put(ctx context.Context, name string, content any) error {
-	b, err := json.MarshalIndent(content, "", "  ")
-	if err == nil {
-		err = s.Store.Put(ctx, name, append(b, '\n'))
-	}
-	return storeFailure(err)
 }
 
 func (s *slot) reply(ctx context.Context, v verdict, d queue.Delivery, r result) error {

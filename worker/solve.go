@@ -10,6 +10,7 @@ import (
 
 	"betaloom/schema"
 	"betaloom/schema/part"
+	"betaloom/schema/point"
 	"betaloom/schema/queue"
 	"betaloom/solvers"
 )
@@ -35,9 +36,9 @@ func (s *slot) solve(ctx context.Context, job *queue.Job) (encoded []byte, c Cou
 	if err != nil {
 		return nil, Counts{}, err
 	}
-	points, err := newPoints(&job.Tile)
+	points, err := point.New(&job.Tile)
 	if err != nil {
-		return nil, Counts{}, err
+		return nil, Counts{}, inputError(err)
 	}
 	t := tile{physics: physics, problem: problem, points: points, part: part.NewBuilder(physics)}
 	for i := range job.Tile.Points() {
@@ -78,7 +79,7 @@ func (s *slot) problem(physics *schema.Physics) (solvers.Problem, error) {
 type tile struct {
 	physics *schema.Physics
 	problem solvers.Problem
-	points  *points
+	points  *point.Points
 	part    *part.Builder
 	near    memory // the modes of the point before, to start from
 	rows    []part.Mode
@@ -112,18 +113,28 @@ func ofPoint(err error) bool {
 	return is[*solvers.InputError](err) || is[*solvers.ConvergenceError](err)
 }
 
+// inputError turns what is wrong with a tile's parameters into the solvers' kind
+// of error: trying again gives the same.
+func inputError(err error) error {
+	var e *point.Error
+	if errors.As(err, &e) {
+		return &solvers.InputError{Where: e.Where, Found: e.Found, Expected: e.Expected}
+	}
+	return err
+}
+
 // modes solves the i-th point.
 func (t *tile) modes(ctx context.Context, i int) (part.Point, []solvers.Mode, error) {
-	keep, err := t.points.at(i)
-	row := part.Point{Values: t.points.values, FrequencyHz: t.points.frequency, Guided: part.Missing}
+	keep, err := t.points.At(i)
+	row := part.Point{Values: t.points.Values, FrequencyHz: t.points.FrequencyHz, Guided: part.Missing}
 	if err != nil {
-		return row, nil, err
+		return row, nil, inputError(err)
 	}
 	if !keep {
 		row.State, row.Reason = part.Excluded, "keep: "+t.physics.Keep
 		return row, nil, nil
 	}
-	modes, count, err := t.problem.Modes(ctx, t.points.q, t.physics.Modes, t.near.modes)
+	modes, count, err := t.problem.Modes(ctx, t.points.Q, t.physics.Modes, t.near.modes)
 	if err != nil {
 		return row, nil, err
 	}

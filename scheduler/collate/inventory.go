@@ -2,7 +2,6 @@ package collate
 
 import (
 	"context"
-	"encoding/json"
 	"errors"
 	"fmt"
 
@@ -64,11 +63,11 @@ type inventory struct {
 }
 
 func takeInventory(ctx context.Context, in Input) (*inventory, error) {
-	parts, err := listTiles(ctx, in.Store, "parts/")
+	parts, err := store.Tiles(ctx, in.Store, "parts/")
 	if err != nil {
 		return nil, err
 	}
-	asides, err := listTiles(ctx, in.Store, "aside/")
+	asides, err := store.Tiles(ctx, in.Store, "aside/")
 	if err != nil {
 		return nil, err
 	}
@@ -84,9 +83,11 @@ func takeInventory(ctx context.Context, in Input) (*inventory, error) {
 			continue
 		}
 		if asides[name] {
-			if inv.aside[i], err = readAside(ctx, in.Store, name); err != nil {
+			record, err := store.GetAside(ctx, in.Store, name)
+			if err != nil {
 				return nil, err
 			}
+			inv.aside[i] = record.Reason
 			continue
 		}
 		if len(inv.missing) == 0 {
@@ -98,34 +99,6 @@ func takeInventory(ctx context.Context, in Input) (*inventory, error) {
 		return nil, &MissingError{Missing: len(inv.missing), Tiles: len(inv.names), First: first}
 	}
 	return inv, nil
-}
-
-func listTiles(ctx context.Context, s store.Store, prefix string) (map[string]bool, error) {
-	names, err := s.List(ctx, prefix)
-	if err != nil {
-		return nil, fmt.Errorf("listing %s: %w", prefix, err)
-	}
-	tiles := make(map[string]bool, len(names))
-	for _, n := range names {
-		if t, ok := store.Tile(n); ok {
-			tiles[t] = true
-		}
-	}
-	return tiles, nil
-}
-
-// readAside gives why a tile was set aside. A record that cannot be read is
-// a reason too: the tile has not been solved either way.
-func readAside(ctx context.Context, s store.Store, name string) (string, error) {
-	b, err := s.Get(ctx, store.Aside(name))
-	if err != nil {
-		return "", err
-	}
-	var record store.SetAside
-	if err := json.Unmarshal(b, &record); err != nil || record.Reason == "" {
-		return "set aside; its record does not say why", nil
-	}
-	return record.Reason, nil
 }
 
 // why gives the reason of a tile without a part; ok is false for a solved one.

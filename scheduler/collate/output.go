@@ -2,9 +2,10 @@ package collate
 
 import (
 	"bufio"
-	"fmt"
 	"os"
 	"path/filepath"
+
+	"betaloom/schema/store"
 )
 
 // temporary ends the name of a file that is not whole yet.
@@ -42,18 +43,10 @@ func (o *output) sync() error {
 
 // publish gives the synced file its name, durably.
 func (o *output) publish() error {
-	if err := os.Rename(o.final+temporary, o.final); err != nil {
+	if err := store.Rename(o.final+temporary, o.final); err != nil {
 		return err
 	}
 	o.named = true
-	folder, err := os.Open(filepath.Dir(o.final))
-	if err != nil {
-		return err
-	}
-	defer folder.Close()
-	if err := folder.Sync(); err != nil {
-		return fmt.Errorf("syncing the folder of %s: %w", o.final, err)
-	}
 	return nil
 }
 

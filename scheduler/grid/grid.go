@@ -3,10 +3,18 @@
 // A grid is either a box, the product of its axes with the last varying
 // fastest, or a list of rows. Points are numbered from 0 in that order over
 // the whole grid; inside a tile they are numbered from 0 in the same order
-// (local). Tiles are blocks aligned to the start of each axis, whose edges do
-// not depend on how long a long axis is: a box that grows at its end
-// keeps its inner tiles, and with them their names and parts. Nothing of the
-// size of the grid is kept in memory.
+// (local).
+//
+// Tiles of a box are blocks aligned to the start of each axis. A block spans
+// a short axis whole; its edges along the long ones do not depend on how long these
+// are. So a box that grows at the end of a long axis keeps its inner tiles,
+// and with them their names and parts; the last block along that axis, where it
+// was not full, is new. Every tile is new when a short axis grows, when one
+// becomes long or a long one short, and when an axis is added or
+// dropped: the edges, or the values in each block, are then others.
+//
+// Of a box nothing of the size of the grid is kept in memory; of a list the
+// rows are.
 package grid
 
 import (

@@ -192,21 +192,9 @@ func (s *Surfaces) Axes() []schema.AxisBlock {
 	return list
 }
 
-// Columns describes the value columns of the file, in its order.
-func (s *Surfaces) Columns() []column.Column { return slices.Clone(s.columns) }
-
 // Sensitivities lists the base parameters in the order of Value.DNeff and Value.DNg,
 // with the columns that give their units.
 func (s *Surfaces) Sensitivities() []MetaSensitivity { return slices.Clone(s.meta.Sensitivities) }
-
-// Present counts the nodes at which a family is guided.
-func (s *Surfaces) Present(family string) (int64, error) {
-	i, err := s.family(family)
-	if err != nil {
-		return 0, err
-	}
-	return s.meta.Families[i].Present, nil
-}
 
 func (s *Surfaces) family(name string) (int, error) {
 	i, ok := s.families[name]

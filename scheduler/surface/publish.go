@@ -6,11 +6,12 @@ import (
 	"fmt"
 	"io"
 	"os"
-	"path/filepath"
 	"slices"
 	"strings"
 
 	"github.com/apache/arrow/go/v17/arrow/ipc"
+
+	"betaloom/schema/store"
 )
 
 // publish writes the whole file under a temporary name, makes it durable and renames it.
@@ -20,15 +21,7 @@ func (w *Writer) publish() error {
 	if err := w.write(temp); err != nil {
 		return fmt.Errorf("surface: %w", err)
 	}
-	if err := os.Rename(temp, w.path); err != nil {
-		return fmt.Errorf("surface: %w", err)
-	}
-	d, err := os.Open(filepath.Dir(w.path))
-	if err != nil {
-		return fmt.Errorf("surface: %w", err)
-	}
-	defer d.Close()
-	if err := d.Sync(); err != nil {
+	if err := store.Rename(temp, w.path); err != nil {
 		return fmt.Errorf("surface: %w", err)
 	}
 	return nil

@@ -99,10 +99,24 @@ func take(t *testing.T, q queue.Taker) queue.Delivery {
 	return d
 }
 
+// state waits for a state: the server may still count a job that has just
+// been answered.
 func state(t *testing.T, q *queue.Queue, want queue.State) {
 	t.Helper()
-	if got, err := q.State(t.Context()); err != nil || got != want {
-		t.Errorf("found %+v, %v, expected %+v", got, err, want)
+	ctx := within(t)
+	again := time.NewTicker(5 * time.Millisecond)
+	defer again.Stop()
+	for {
+		got, err := q.State(ctx)
+		if err == nil && got == want {
+			return
+		}
+		select {
+		case <-ctx.Done():
+			t.Errorf("found %+v, %v, expected %+v", got, err, want)
+			return
+		case <-again.C:
+		}
 	}
 }
 

@@ -53,14 +53,6 @@ func Tile(name string) (tile string, ok bool) {
 	return "", false
 }
 
-// SetAside is the content of an Aside record, as JSON: a tile that could not
-// be solved.
-type SetAside struct {
-	Tile     string `json:"tile"`
-	Reason   string `json:"reason"`
-	Attempts int    `json:"attempts"`
-}
-
 // CheckName reports whether name may be stored.
 func CheckName(name string) error {
 	if name == "" || len(name) > MaxName {

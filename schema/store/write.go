@@ -49,6 +49,18 @@ func write(path string, data []byte, hook func(string), publish func(temp, path 
 	return syncFolder(filepath.Dir(path))
 }
 
+// Rename gives a file that is synced its final name in the same folder,
+// durably. It is for large files that are not written in one piece.
+func Rename(temp, path string) error {
+	if err := os.Rename(temp, path); err != nil {
+		return err
+	}
+	if err := syncFolder(filepath.Dir(path)); err != nil {
+		return fmt.Errorf("syncing the folder of %s: %w", path, err)
+	}
+	return nil
+}
+
 // createLocked makes a temporary file whose lock says that its writer lives.
 // Between making and locking it a cleaner may take it for a dead one's: then
 // it has no name any more, and another is made.

@@ -206,6 +206,34 @@ func TestRefusedPoints(t *testing.T) {
 	}
 }
 
+// A physics that no sweep file gives, as a message from elsewhere may hold.
+func TestRefusedPhysics(t *testing.T) {
+	for name, change := range map[string]func(p *schema.Physics){
+		"no section":        func(p *schema.Physics) { p.Section = schema.Section{} },
+		"no layers":         func(p *schema.Physics) { p.Section.Layers = &schema.Layers{} },
+		"unknown thickness": func(p *schema.Physics) { p.Section.Layers.Layers[1].Thickness = &schema.Number{Parameter: "width"} },
+		"unknown material":  func(p *schema.Physics) { p.Section.Layers.Layers[1].Material = "tin" },
+		"no parameters":     func(p *schema.Physics) { p.Parameters = nil },
+		"unknown index":     func(p *schema.Physics) { p.Materials["film"] = schema.Material{Index: &schema.Number{Parameter: "x"}} },
+		"two kinds of medium": func(p *schema.Physics) {
+			p.Materials["film"] = schema.Material{Index: number(2), Permittivity: number(4)}
+		},
+	} {
+		t.Run(name, func(t *testing.T) {
+			p := film()
+			change(p)
+			problem, _, err := New(p)
+			if err == nil {
+				_, _, err = problem.Modes(context.Background(), solvers.Q{omega(um), um}, 4, nil)
+			}
+			var input *solvers.InputError
+			if !errors.As(err, &input) {
+				t.Errorf("found %v, expected an input error", err)
+			}
+		})
+	}
+}
+
 // TestMetalLayer: a metal is no dielectric, and the answer says so.
 func TestMetalLayer(t *testing.T) {
 	p := film()

@@ -27,7 +27,7 @@ type Choice struct {
 	Reasons  []string
 }
 
-// Explain chooses the equation for p.
+// Explain chooses the equation for p, which has a section.
 func Explain(p *schema.Physics) Choice {
 	switch s := p.Section; {
 	case s.Circular != nil:

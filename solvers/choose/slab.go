@@ -33,11 +33,25 @@ func newSlab(p *schema.Physics) (*slabProblem, error) {
 	}
 	for i, layer := range l.Layers {
 		s.stack.Layers[i].HalfSpace = layer.Thickness == nil
+		if err := checkName(p, where(i, layer), layer.Thickness); err != nil {
+			return nil, err
+		}
 		if layer.Name != "" {
 			s.named = append(s.named, i)
 		}
 	}
 	return s, nil
+}
+
+// checkName sees that a thickness which names a parameter names one of p.
+func checkName(p *schema.Physics, where string, thickness *schema.Number) error {
+	if thickness == nil || thickness.Parameter == "" {
+		return nil
+	}
+	if _, ok := p.Parameter(thickness.Parameter); !ok {
+		return &solvers.InputError{Where: where, Found: "the thickness " + thickness.Parameter, Expected: "a parameter of the sweep"}
+	}
+	return nil
 }
 
 // Modes solves the stack at q. Every point is solved on its own: a stack is

@@ -89,16 +89,16 @@ func (r *Resolver) dependencies() map[string]map[int]bool {
 		needs[name] = map[int]bool{1 + i: true}
 	}
 	for _, d := range r.derived {
-		if d.name == r.clock {
+		if d.Name == r.clock {
 			continue
 		}
 		all := map[int]bool{}
-		for _, n := range d.expr.Names() {
+		for _, n := range d.Expr.Names() {
 			for i := range needs[n] {
 				all[i] = true
 			}
 		}
-		needs[d.name] = all
+		needs[d.Name] = all
 	}
 	return needs
 }

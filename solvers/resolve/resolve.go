@@ -2,7 +2,9 @@ package resolve
 
 import (
 	"fmt"
+	"maps"
 	"math"
+	"slices"
 
 	"betaloom/schema"
 	"betaloom/schema/expr"
@@ -15,19 +17,14 @@ import (
 // it serves one goroutine.
 type Resolver struct {
 	base    []string
-	derived []derived // each after those it names
-	clock   string    // wavelength or frequency, whichever the sweep has
-	moving  bool      // the clock is derived
+	derived []expr.Definition // each after those it names
+	clock   string            // wavelength or frequency, whichever the sweep has
+	moving  bool              // the clock is derived
 
 	point solvers.Q
 	jets  map[string]*jet.Jet
 	sweep []float64
 	media map[string]*medium
-}
-
-type derived struct {
-	name string
-	expr *expr.Expr
 }
 
 // New compiles the expressions and materials of p. What it refuses is a
@@ -38,7 +35,8 @@ func New(p *schema.Physics) (*Resolver, error) {
 		return nil, err
 	}
 	needs := r.dependencies()
-	for name, m := range p.Materials {
+	for _, name := range slices.Sorted(maps.Keys(p.Materials)) { // so that the first fault is always the same
+		m := p.Materials[name]
 		if m.Metal() {
 			continue
 		}
@@ -53,7 +51,7 @@ func New(p *schema.Physics) (*Resolver, error) {
 }
 
 func (r *Resolver) compileParameters(p *schema.Physics) error {
-	var open []derived
+	var open []expr.Definition
 	for _, q := range p.Parameters {
 		r.jets[q.Name] = &jet.Jet{}
 		if q.Name == schema.Wavelength || q.Name == schema.Frequency {
@@ -66,7 +64,7 @@ func (r *Resolver) compileParameters(p *schema.Physics) error {
 		if err != nil {
 			return &solvers.InputError{Where: "parameter " + q.Name, Found: q.Expr, Expected: "an expression: " + err.Error()}
 		}
-		open = append(open, derived{q.Name, e})
+		open = append(open, expr.Definition{Name: q.Name, Expr: e})
 	}
 	if r.clock == "" {
 		return &solvers.InputError{Where: "parameters", Found: "neither wavelength nor frequency", Expected: "one of them"}
@@ -80,44 +78,20 @@ func (r *Resolver) compileParameters(p *schema.Physics) error {
 }
 
 // order sorts the derived parameters so that each follows those it names.
-func (r *Resolver) order(open []derived) error {
-	waiting := map[string]bool{}
-	for _, d := range open {
-		waiting[d.name] = true
-	}
-	for len(open) > 0 {
-		var next []derived
-		for _, d := range open {
-			if unmet(d.expr, waiting) {
-				next = append(next, d)
-				continue
-			}
-			r.derived = append(r.derived, d)
-			delete(waiting, d.name)
-		}
-		if len(next) == len(open) {
-			return &solvers.InputError{Where: "parameter " + open[0].name, Found: "an expression that depends on itself", Expected: "one that does not"}
-		}
-		open = next
+func (r *Resolver) order(open []expr.Definition) error {
+	var circle []expr.Definition
+	if r.derived, circle = expr.Order(open); len(circle) > 0 {
+		return &solvers.InputError{Where: "parameter " + circle[0].Name, Found: "an expression that depends on itself", Expected: "one that does not"}
 	}
 	return r.known()
-}
-
-func unmet(e *expr.Expr, waiting map[string]bool) bool {
-	for _, n := range e.Names() {
-		if waiting[n] {
-			return true
-		}
-	}
-	return false
 }
 
 // known checks that expressions name parameters of the sweep.
 func (r *Resolver) known() error {
 	for _, d := range r.derived {
-		for _, n := range d.expr.Names() {
+		for _, n := range d.Expr.Names() {
 			if r.jets[n] == nil {
-				return &solvers.InputError{Where: "parameter " + d.name, Found: "the unknown name " + n, Expected: "a parameter of the sweep"}
+				return &solvers.InputError{Where: "parameter " + d.Name, Found: "the unknown name " + n, Expected: "a parameter of the sweep"}
 			}
 		}
 	}
@@ -145,20 +119,20 @@ func (r *Resolver) Set(q solvers.Q) error {
 
 func (r *Resolver) evaluate() error {
 	for _, d := range r.derived {
-		v, err := expr.Eval(d.expr, jet.Real{}, func(name string) jet.Jet {
+		v, err := expr.Eval(d.Expr, jet.Real{}, func(name string) jet.Jet {
 			if name == r.clock {
 				return clock(name, r.point[0])
 			}
 			return *r.jets[name]
 		})
 		if err != nil {
-			return &solvers.InputError{Where: "parameter " + d.name, Found: err.Error(), Expected: "a number"}
+			return &solvers.InputError{Where: "parameter " + d.Name, Found: err.Error(), Expected: "a number"}
 		}
-		if d.name == r.clock {
+		if d.Name == r.clock {
 			r.setSweep(v)
 			continue
 		}
-		*r.jets[d.name] = v
+		*r.jets[d.Name] = v
 	}
 	*r.jets[r.clock] = clock(r.clock, r.point[0])
 	return nil
