@@ -70,23 +70,21 @@ func bad(layer int, found, expected string) error {
 // finite reports whether every number of a jet is, and its gradients have
 // one entry a parameter or none.
 func finite(j *jet.Jet, params int) bool {
-	for _, v := range [4]complex128{j.V, j.W, j.WW, j.WWW} {
-		if v-v != 0 {
-			return false
-		}
+	if j.P != nil && len(j.P) != params || j.WP != nil && len(j.WP) != params {
+		return false
 	}
-	for _, g := range [2][]complex128{j.P, j.WP} {
-		if g != nil && len(g) != params {
-			return false
-		}
-		for _, v := range g {
-			if v-v != 0 {
-				return false
-			}
-		}
+	rest := nought(j.V) + nought(j.W) + nought(j.WW) + nought(j.WWW)
+	for _, v := range j.P {
+		rest += nought(v)
 	}
-	return true
+	for _, v := range j.WP {
+		rest += nought(v)
+	}
+	return rest == 0
 }
+
+// nought is zero for what is finite, and NaN for anything else.
+func nought(v complex128) float64 { return 0*real(v) + 0*imag(v) }
 
 // lossless reports whether the permittivities and their derivatives in
 // frequency are real and positive in value.
@@ -118,4 +116,4 @@ func realStack(s *Stack) bool {
 	return true
 }
 
-func abs(z complex128) float64 { return math.Hypot(real(z), imag(z)) }
+func abs(z complex128) float64 { return length(real(z), imag(z)) }

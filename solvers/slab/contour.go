@@ -34,12 +34,11 @@ func (c *search) spot(r *region, s complex128) spot {
 	q := c.line
 	c.work--
 	u := q.unknown(r.n2(s))
-	q.u = series[complex128]{u, 1}
 	q.steady = true
-	q.carry(&q.u, false, 1, c.at)
+	q.look(u, c.at)
 	q.steady = false
-	d := q.mismatch(c.at, 1)
-	return spot{s, u, d[0], d[1] / d[0]}
+	d := q.miss(c.at)
+	return spot{s, u, d.a, d.b / d.a}
 }
 
 // unknown is the u of a given N, with Re u >= 0.
@@ -47,7 +46,7 @@ func (q *line[T]) unknown(n2 T) T {
 	if !q.branch {
 		return n2
 	}
-	return sqrt((n2 - q.base[0]) / q.sigma[0])
+	return sqrt((n2 - q.base.a) / q.sigma.a)
 }
 
 // turns counts the zeros inside a region.
@@ -82,7 +81,7 @@ func (c *search) turn(r *region, a, b *spot, depth int) (float64, error) {
 	}
 	du := b.u - a.u
 	if abs(du)*max(abs(a.rate), abs(b.rate)) < 1 {
-		t := cmplx.Phase(b.f / a.f)
+		t := cmplx.Phase(b.f * cmplx.Conj(a.f))
 		if math.Abs(t-imag(du*(a.rate+b.rate))/2) < 0.25 {
 			return t, nil
 		}
@@ -185,10 +184,9 @@ func (c *search) newton(n2 complex128) (complex128, bool) {
 	u := q.unknown(n2)
 	for range 30 {
 		c.work--
-		q.u = series[complex128]{u, 1}
-		q.carry(&q.u, false, 1, c.at)
-		d := q.mismatch(c.at, 1)
-		du := d[0] / d[1]
+		q.look(u, c.at)
+		d := q.miss(c.at)
+		du := d.a / d.b
 		if cmplx.IsNaN(du) || cmplx.IsInf(du) {
 			return 0, false
 		}
@@ -202,7 +200,5 @@ func (c *search) newton(n2 complex128) (complex128, bool) {
 
 // place is N at u.
 func (q *line[T]) place(u T) T {
-	v := series[T]{u}
-	v = q.rise(&v, true, 0)
-	return q.base[0] + v[0]
+	return q.base.a + q.lift(u).a
 }

@@ -47,6 +47,22 @@ func entire[T scalar](z T) (f [5]T, factor float64) {
 	return f, 1
 }
 
+// trig is the functions at a film's z, kept because several passes need them there.
+type trig[T scalar] struct {
+	z, factor T
+	f         [5]T
+}
+
+// trig gives the functions of film i at z.
+func (q *line[T]) trig(i int, z T) *trig[T] {
+	t := &q.trigs[i]
+	if t.z != z || t.factor == 0 {
+		f, factor := entire(z)
+		*t = trig[T]{z: z, factor: num[T](factor), f: f}
+	}
+	return t
+}
+
 func entireReal(z float64) (f [5]float64, factor float64) {
 	if math.Abs(z) < smallArgument {
 		return smallReal(z), 1
@@ -89,10 +105,11 @@ func entireComplex(z complex128) (f [5]complex128, factor float64) {
 	}
 	x := csqrt(z)
 	c, s, factor := scaledSincos(x)
-	f[0], f[1] = c, s/x
-	f[2] = (f[1] - f[0]) / z
-	f[3] = (3*f[2] - f[1]) / z
-	f[4] = (5*f[3] - f[2]) / z
+	i := 1 / z
+	f[0], f[1] = c, s*(x*i)
+	f[2] = (f[1] - f[0]) * i
+	f[3] = (3*f[2] - f[1]) * i
+	f[4] = (5*f[3] - f[2]) * i
 	return f, factor
 }
 
@@ -114,8 +131,11 @@ func smallComplex(z complex128) (f [5]complex128) {
 func scaledSincos(x complex128) (c, s complex128, factor float64) {
 	y := math.Abs(imag(x))
 	factor = math.Exp(-y)
-	cosh := (1 + factor*factor) / 2
-	sinh := math.Copysign(-math.Expm1(-2*y)/2, imag(x))
+	cosh, sinh := 0.5+0.5*factor*factor, 0.5-0.5*factor*factor
+	if y < 1 { // the difference would lose digits
+		sinh = -math.Expm1(-2*y) / 2
+	}
+	sinh = math.Copysign(sinh, imag(x))
 	si, co := math.Sincos(real(x))
 	return complex(co*cosh, -si*sinh), complex(si*cosh, co*sinh), factor
 }

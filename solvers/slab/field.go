@@ -14,7 +14,7 @@ func shape[T scalar](o *output, q *line[T], n complex128, m *solvers.Mode) {
 	put := func(layer, twin int, c *coefs[T], i2, i4 float64) {
 		s := 1.0
 		if q.tm {
-			s = real(n * widen(c.b[0]))
+			s = real(n * widen(c.b.a))
 		}
 		one += s * i2
 		two += s * s * i4
@@ -55,30 +55,16 @@ const sampled = 0.25
 // psi is positive at the lowest end, where it has no node; a lossy mode is
 // first turned in phase until the sum of psi^2 is real and positive.
 func sample[T scalar](o *output, q *line[T], p *pick, m *solvers.Mode) {
-	var v [16]complex128
-	total := o.total
-	if total == 0 {
-		total = 1
-	}
-	lo, hi := 0.0, total
-	if !o.stack.GroundBottom {
-		lo -= sampled * total
-	}
-	if !o.stack.GroundTop {
-		hi += sampled * total
-	}
+	v := places(o, q, p.odd)
 	var squares complex128
 	for i := range v {
-		y := lo + (hi-lo)*(float64(i)+0.5)/16
-		v[i] = widen(q.psi(y, o.total, p.odd))
 		squares += v[i] * v[i]
 	}
-	foot := widen(q.foot)
 	turn := complex(1, 0)
 	if imag(squares) != 0 {
 		turn = 1 / cmplx.Sqrt(squares)
 	}
-	if real(turn*foot) < 0 {
+	if real(turn*widen(q.foot)) < 0 {
 		turn = -turn
 	}
 	norm := 0.0
@@ -92,15 +78,39 @@ func sample[T scalar](o *output, q *line[T], p *pick, m *solvers.Mode) {
 	}
 }
 
-// psi is the field at y over 1/k, from the lowest film's lower face.
-func (q *line[T]) psi(y, total float64, odd bool) T {
-	if q.mirror && y > total/2 {
-		v := q.psi(total-y, total, odd)
-		if odd {
-			return -v
-		}
-		return v
+// places gives psi at the places of a signature.
+func places[T scalar](o *output, q *line[T], odd bool) (v [16]complex128) {
+	total := o.total
+	if total == 0 {
+		total = 1
 	}
+	lo, hi := 0.0, total
+	if !o.stack.GroundBottom {
+		lo -= sampled * total
+	}
+	if !o.stack.GroundTop {
+		hi += sampled * total
+	}
+	step, n := (hi-lo)/16, len(v)
+	if q.mirror {
+		n /= 2
+	}
+	q.swing.film = -1
+	for i := range n {
+		v[i] = widen(q.psi(lo+step*(float64(i)+0.5), step))
+	}
+	for i := n; i < len(v); i++ {
+		v[i] = v[len(v)-1-i]
+		if odd {
+			v[i] = -v[i]
+		}
+	}
+	return v
+}
+
+// psi is the field at y over 1/k, from the lowest film's lower face. It is asked
+// for in steps upward.
+func (q *line[T]) psi(y, step float64) T {
 	y -= q.origin
 	if y < 0 {
 		return q.edges[0] * exp(q.rates[0]*num[T](y))
@@ -112,9 +122,31 @@ func (q *line[T]) psi(y, total float64, odd bool) T {
 			continue
 		}
 		if i >= q.meets {
-			y = f.d - y
+			y, step = f.d-y, -step
 		}
-		return q.faces[i].at(y, q.z[i][0], f.d)
+		if z := q.z[i].a; rough(z) > 1.5 && !evanescent(z) {
+			return q.swing.at(i, &q.faces[i], sqrt(z)/f.h, num[T](y), num[T](step))
+		}
+		return q.faces[i].at(y, q.z[i].a, f.d)
 	}
 	return q.edges[1] * exp(-q.rates[1]*num[T](y))
+}
+
+// swing is the phase of a standing wave in a film, turned by equal steps.
+type swing[T scalar] struct {
+	film             int
+	sin, cos         T
+	stepSin, stepCos T
+}
+
+// at is psi at the distance y from the face that was entered, for a wave number k.
+func (w *swing[T]) at(film int, f *face[T], k, y, step T) T {
+	if w.film != film {
+		w.film = film
+		w.sin, w.cos = sincos(k * y)
+		w.stepSin, w.stepCos = sincos(k * step)
+	} else {
+		w.sin, w.cos = w.sin*w.stepCos+w.cos*w.stepSin, w.cos*w.stepCos-w.sin*w.stepSin
+	}
+	return f.psi*w.cos + f.rise/k*w.sin
 }

@@ -11,25 +11,25 @@ import "betaloom/solvers/jet"
 //	dN/d thickness = k (phi^2/p + b(e-N) psi^2) / norm
 //
 // the integrals over that layer; the last is constant inside a film.
-func gradient[T scalar](o *output, q *line[T], norm, n2 *series[T]) {
+func gradient[T scalar](o *output, q *line[T], norm linear[T], n2 series[T]) {
 	clear(o.acc[0])
 	clear(o.acc[1])
-	over := inverse(norm, 1)
+	over := norm.over()
 	for i := range q.films {
 		f := &q.films[i]
 		s := q.shares[i]
-		s.scale(&over)
-		once := w2(&s.energy, o.k)
+		s.scale(over)
+		once := w2(s.energy, o.k)
 		if f.twin >= 0 {
 			s = s.half()
-			once = w2(&s.energy, o.k)
+			once = w2(s.energy, o.k)
 			h := once
 			if f.twin == f.layer {
 				h = [2]complex128{}
 			}
-			o.layer(f.twin, sensitive(q, &f.live, &s, n2), q.tm, h)
+			o.layer(f.twin, sensitive(q, &f.live, &s, n2.first()), q.tm, h)
 		}
-		o.layer(f.layer, sensitive(q, &f.live, &s, n2), q.tm, once)
+		o.layer(f.layer, sensitive(q, &f.live, &s, n2.first()), q.tm, once)
 	}
 	for i := range q.ends {
 		e := &q.ends[i]
@@ -37,40 +37,39 @@ func gradient[T scalar](o *output, q *line[T], norm, n2 *series[T]) {
 			continue
 		}
 		s := q.tails[i]
-		s.scale(&over)
+		s.scale(over)
 		if e.twin >= 0 {
 			s = s.half()
-			o.layer(e.twin, sensitive(q, &e.live, &s, n2), q.tm, [2]complex128{})
+			o.layer(e.twin, sensitive(q, &e.live, &s, n2.first()), q.tm, [2]complex128{})
 		}
-		o.layer(e.layer, sensitive(q, &e.live, &s, n2), q.tm, [2]complex128{})
+		o.layer(e.layer, sensitive(q, &e.live, &s, n2.first()), q.tm, [2]complex128{})
 	}
 }
 
-func (s *share[T]) scale(by *series[T]) {
-	s.psi, s.phi, s.energy = mul(&s.psi, by, 1), mul(&s.phi, by, 1), mul(&s.energy, by, 1)
+func (s *share[T]) scale(by linear[T]) {
+	s.psi, s.phi, s.energy = s.psi.times(by), s.phi.times(by), s.energy.times(by)
 }
 
 func (s share[T]) half() share[T] {
-	return share[T]{psi: scale(&s.psi, 0.5), phi: scale(&s.phi, 0.5), energy: scale(&s.energy, 0.5)}
+	return share[T]{psi: s.psi.by(0.5), phi: s.phi.by(0.5), energy: s.energy.by(0.5)}
 }
 
 // sensitive gives dN/de and dN/d eps_z of a layer.
-func sensitive[T scalar](q *line[T], c *coefs[T], s *share[T], n2 *series[T]) (g [2][2]complex128) {
+func sensitive[T scalar](q *line[T], c *coefs[T], s *share[T], n2 linear[T]) (g [2][2]complex128) {
 	e := s.psi
 	if q.tm {
-		b := mul(&c.b, &c.b, 1)
-		b = mul(n2, &b, 1)
-		e = mul(&b, &e, 1)
-		g[1] = [2]complex128{widen(s.phi[0]), widen(s.phi[1])}
+		b := c.b.first()
+		e = n2.times(b.times(b)).times(e)
+		g[1] = [2]complex128{widen(s.phi.a), widen(s.phi.b)}
 	}
-	g[0] = [2]complex128{widen(e[0]), widen(e[1])}
+	g[0] = [2]complex128{widen(e.a), widen(e.b)}
 	return g
 }
 
 // w2 is the weight of a thickness in metres, k (1+t) times that of k d.
-func w2[T scalar](e *series[T], k float64) [2]complex128 {
+func w2[T scalar](e linear[T], k float64) [2]complex128 {
 	c := complex(k, 0)
-	return [2]complex128{c * widen(e[0]), c * (widen(e[1]) + widen(e[0]))}
+	return [2]complex128{c * widen(e.a), c * (widen(e.b) + widen(e.a))}
 }
 
 // layer adds the part of one layer of the stack.

@@ -1,51 +1,47 @@
 package slab
 
 // share is what one medium contributes: the integrals of psi^2 and phi^2 and,
-// for a film, the invariant phi^2/p + b(e-N) psi^2, as series to first
+// for a film, the invariant phi^2/p + b(e-N) psi^2, to first
 // order along the way. All carry the same factor (see weigh).
-type share[T scalar] struct{ psi, phi, energy series[T] }
+type share[T scalar] struct{ psi, phi, energy linear[T] }
 
 // gather computes the shares of films and ends from the states that expand
 // left, and the norm, the sum of b psi^2.
-func (q *line[T]) gather(m int, films []share[T], ends *[2]share[T]) (norm series[T]) {
-	v := q.rise(&q.u, true, 1)
-	amp := constant(T(1))
+func (q *line[T]) gather(m int, films []share[T], ends *[2]share[T]) (norm linear[T]) {
+	v := q.rise(q.u).first()
+	amp := linear[T]{a: 1}
 	for i := m - 1; i >= 0; i-- {
 		out := amp
-		amp = mul(&amp, &q.factor[i], 1)
-		films[i] = q.film(i, &q.states[0][i], &amp, &q.states[0][i+1], &out, &v)
+		amp = amp.times(q.factor[i])
+		q.film(i, &q.states[0][i], amp, &q.states[0][i+1], out, v, &films[i])
 	}
-	ends[0] = q.tail(0, &q.states[0][0], &amp)
-	q.foot = amp[0]
+	q.tail(0, &q.states[0][0], amp, &ends[0])
+	q.foot = amp.a
 	amp = q.joint(m)
 	last := len(q.films)
 	for i := m; i < last; i++ {
 		out := amp
-		amp = mul(&amp, &q.factor[i], 1)
-		films[i] = q.film(i, &q.states[1][i+1], &amp, &q.states[1][i], &out, &v)
+		amp = amp.times(q.factor[i])
+		q.film(i, &q.states[1][i+1], amp, &q.states[1][i], out, v, &films[i])
 	}
-	ends[1] = q.tail(1, &q.states[1][last], &amp)
+	q.tail(1, &q.states[1][last], amp, &ends[1])
 	for i := range films {
 		q.weigh(&films[i])
-		c := mul(&q.films[i].live.b, &films[i].psi, 1)
-		norm = add(&norm, &c)
+		norm = norm.plus(q.films[i].live.b.first().times(films[i].psi))
 	}
 	for i := range ends {
-		c := mul(&q.ends[i].live.b, &ends[i].psi, 1)
-		norm = add(&norm, &c)
+		norm = norm.plus(q.ends[i].live.b.first().times(ends[i].psi))
 	}
 	return norm
 }
 
 // joint is the factor that makes the upper side continue the lower one.
-func (q *line[T]) joint(m int) series[T] {
+func (q *line[T]) joint(m int) linear[T] {
 	a, b := &q.states[0][m], &q.states[1][m]
-	x, y := a.psi, b.psi
-	if modulus(b.phi[0]) > modulus(b.psi[0]) {
-		x, y = scale(&a.phi, -1), b.phi
+	if modulus(b.phi.a) > modulus(b.psi.a) {
+		return a.phi.first().by(-1).times(b.phi.first().over())
 	}
-	r := inverse(&y, 1)
-	return mul(&x, &r, 1)
+	return a.psi.first().times(b.psi.first().over())
 }
 
 // weigh multiplies by u where u is a decay constant: a tail then has a finite
@@ -54,64 +50,65 @@ func (q *line[T]) weigh(s *share[T]) {
 	if !q.branch {
 		return
 	}
-	s.psi, s.phi, s.energy = mul(&q.u, &s.psi, 1), mul(&q.u, &s.phi, 1), mul(&q.u, &s.energy, 1)
+	u := q.u.first()
+	s.psi, s.phi, s.energy = u.times(s.psi), u.times(s.phi), u.times(s.energy)
 }
 
 // tail is the share of a half-space, psi^2/2g, weighed.
-func (q *line[T]) tail(i int, s *state[T], amp *series[T]) share[T] {
+func (q *line[T]) tail(i int, s *state[T], amp linear[T], out *share[T]) {
 	e := &q.ends[i]
+	*out = share[T]{}
 	if e.closure != open {
 		q.edges[i], q.rates[i] = 0, 0
-		return share[T]{}
+		return
 	}
-	q.edges[i], q.rates[i] = amp[0]*s.psi[0], q.u[0]
-	w := constant(num[T](0.5)) // u/2g
+	q.edges[i], q.rates[i] = amp.a*s.psi.a, q.u.a
+	w := linear[T]{a: 0.5} // u/2g
 	switch {
 	case e.level:
-		k := q.likeness(e, true, 1)
-		q.rates[i] *= k[0]
-		k = inverse(&k, 1)
-		w = scale(&k, 0.5)
+		k := q.likeness(&e.live).first()
+		q.rates[i] *= k.a
+		w = k.over().by(0.5)
 	case !e.cut:
-		g := q.decay(e, &q.u, true, 1)
-		q.rates[i] = g[0]
-		g = inverse(&g, 1)
-		w = scale(&g, 0.5)
+		g := q.decay(e, &e.live, q.rise(q.u)).first()
+		q.rates[i] = g.a
+		w = g.over().by(0.5)
 		if q.branch {
-			w = mul(&q.u, &w, 1)
+			w = q.u.first().times(w)
 		}
 	}
-	w = mul(&w, amp, 1)
-	w = mul(&w, amp, 1)
-	psi, phi := mul(&s.psi, &s.psi, 1), mul(&s.phi, &s.phi, 1)
-	return share[T]{psi: mul(&w, &psi, 1), phi: mul(&w, &phi, 1)}
+	w = w.times(amp).times(amp)
+	psi, phi := s.psi.first(), s.phi.first()
+	out.psi, out.phi = w.times(psi.times(psi)), w.times(phi.times(phi))
 }
 
 // film is the share of film i whose state is in where it was entered and out
 // where it was left, before weighing.
-func (q *line[T]) film(i int, in *state[T], ain *series[T], out *state[T], aout, v *series[T]) share[T] {
+func (q *line[T]) film(i int, in *state[T], ain linear[T], out *state[T], aout, v linear[T], r *share[T]) {
 	f := &q.films[i]
-	g := sub(&f.live.gap, v)
-	g = mul(&f.live.b, &g, 1)
-	h := series[T]{num[T](f.d), num[T](f.d)}
-	psi, phi := mul(ain, &in.psi, 1), mul(ain, &in.phi, 1)
-	q.faces[i] = face[T]{psi: psi[0], rise: f.live.inv[0] * phi[0], end: aout[0] * out.psi[0]}
-	if evanescent(q.z[i][0]) {
-		end := mul(aout, &out.psi, 1)
-		return thick(&f.live.inv, &q.z[i], &h, &psi, &end)
+	inv := f.live.inv.first()
+	psi, phi := ain.times(in.psi.first()), ain.times(in.phi.first())
+	q.faces[i] = face[T]{psi: psi.a, rise: inv.a * phi.a, end: aout.a * out.psi.a}
+	if evanescent(q.z[i].a) {
+		thick(r, inv, q.z[i], f.h, psi, aout.times(out.psi.first()))
+		return
 	}
-	return thin(&f.live.inv, &g, &q.z[i], &h, &psi, &phi)
+	g := f.live.b.first().times(f.live.gap.first().less(v))
+	thin(r, q.trig(i, q.z[i].a), inv, g, q.z[i], f.h, psi, phi)
 }
 
 // evanescent reports whether a film of that z is treated as two decaying
-// waves, one from each face.
+// waves, one from each face: (Im sqrt z)^2 = (|z| - Re z)/2 is large enough.
 func evanescent[T scalar](z T) bool {
 	switch v := any(z).(type) {
 	case float64:
 		return v <= -smallArgument
 	case complex128:
-		y := imag(csqrt(v))
-		return y*y >= smallArgument
+		x, y := real(v), imag(v)
+		if x < 0 {
+			return length(x, y)-x >= 2*smallArgument
+		}
+		return y*y > 2*smallArgument*(length(x, y)+x)
 	}
 	return false
 }
@@ -119,70 +116,44 @@ func evanescent[T scalar](z T) bool {
 // thin integrates from the state on one face, with entire functions:
 // int psi^2 = h [psi^2 (1 + cs)/2 + psi' psi h s^2 + psi'^2 h^2 (s^2 - c f)/2],
 // f = j_1(x)/x, and the same for phi, which obeys the dual equation.
-func thin[T scalar](inv, g, z, h, psi, phi *series[T]) (r share[T]) {
-	fn, factor := entire(z[0])
-	for i := range fn {
-		fn[i] *= num[T](1 / factor)
-	}
-	d := z[1]
-	c, s := series[T]{fn[0], -fn[1] / 2 * d}, series[T]{fn[1], -fn[2] / 2 * d}
-	j := series[T]{fn[2], -fn[3] / 2 * d}
-	cs, ss, cj := mul(&c, &s, 1), mul(&s, &s, 1), mul(&c, &j, 1)
-	even := scale(&cs, 0.5)
-	even[0] += 0.5
-	odd := sub(&ss, &cj)
-	odd = scale(&odd, 0.5)
-	even, ss = mul(h, &even, 1), mul(h, &ss, 1)
-	odd = mul(h, &odd, 1)
-	up, down := mul(inv, phi, 1), mul(g, psi, 1) // psi' and -phi'
-	x, y := mul(&up, phi, 1), mul(&down, psi, 1)
-	r.energy = add(&x, &y)
-	up, down = mul(&up, h, 1), mul(&down, h, 1)
-	down = scale(&down, -1)
-	r.psi = quadratic(psi, &up, &even, &ss, &odd)
-	r.phi = quadratic(phi, &down, &even, &ss, &odd)
-	return r
+func thin[T scalar](r *share[T], t *trig[T], inv, g, z linear[T], d T, psi, phi linear[T]) {
+	k := 1 / t.factor
+	h, x := linear[T]{d, d}, -0.5*z.b
+	c := linear[T]{t.f[0], t.f[1] * x}.by(k)
+	s := linear[T]{t.f[1], t.f[2] * x}.by(k)
+	j := linear[T]{t.f[2], t.f[3] * x}.by(k)
+	even, mixed := c.times(s).by(0.5), s.times(s)
+	even.a += 0.5
+	odd := mixed.less(c.times(j)).by(0.5)
+	even, mixed, odd = h.times(even), h.times(mixed), h.times(odd)
+	up, down := inv.times(phi), g.times(psi) // psi' and -phi'
+	r.energy = up.times(phi).plus(down.times(psi))
+	r.psi = quadratic(psi, up.times(h), even, mixed, odd)
+	r.phi = quadratic(phi, down.times(h).by(-1), even, mixed, odd)
 }
 
 // quadratic is a^2 even + a b mixed + b^2 odd.
-func quadratic[T scalar](a, b, even, mixed, odd *series[T]) series[T] {
-	aa, ab, bb := mul(a, a, 1), mul(a, b, 1), mul(b, b, 1)
-	x, y, z := mul(&aa, even, 1), mul(&ab, mixed, 1), mul(&bb, odd, 1)
-	x = add(&x, &y)
-	return add(&x, &z)
+func quadratic[T scalar](a, b, even, mixed, odd linear[T]) linear[T] {
+	return a.times(a.times(even).plus(b.times(mixed))).plus(b.times(b).times(odd))
 }
 
 // thick integrates psi = A exp(-k y) + B exp(-k (h - y)) from the values of
 // psi on both faces.
-func thick[T scalar](inv, z, h, psi, end *series[T]) (r share[T]) {
-	minus := scale(z, -1)
-	x := root(&minus, 1) // k h
-	e0 := exp(-x[0])
-	e := series[T]{e0, -x[1] * e0}
-	ee := mul(&e, &e, 1)
-	gap := series[T]{1 - ee[0], -ee[1]}
-	over := inverse(&gap, 1)
-	a, b := mul(end, &e, 1), mul(psi, &e, 1)
-	a, b = sub(psi, &a), sub(end, &b)
-	a, b = mul(&a, &over, 1), mul(&b, &over, 1)
-	aa, bb, ab := mul(&a, &a, 1), mul(&b, &b, 1), mul(&a, &b, 1)
-	ix := inverse(&x, 1)
-	own := add(&aa, &bb)
-	own = mul(&own, &gap, 1)
-	own = mul(&own, &ix, 1)
-	own = scale(&own, 0.5)
-	mixed := mul(&ab, &e, 1)
-	mixed = scale(&mixed, 2)
-	sum, diff := add(&own, &mixed), sub(&own, &mixed)
-	r.psi = mul(&sum, h, 1)
-	ih, ip := inverse(h, 1), inverse(inv, 1)
-	k := mul(&x, &ih, 1)
-	k = mul(&k, &ip, 1) // p k
-	kk := mul(&k, &k, 1)
-	r.phi = mul(&kk, &diff, 1)
-	r.phi = mul(&r.phi, h, 1)
-	r.energy = mul(&kk, &mixed, 1)
-	r.energy = mul(&r.energy, inv, 1)
-	r.energy = scale(&r.energy, -2)
-	return r
+func thick[T scalar](r *share[T], inv, z linear[T], d T, psi, end linear[T]) {
+	x := linear[T]{a: sqrt(-z.a)} // k h
+	x.b = -0.5 * z.b / x.a
+	h := linear[T]{d, d}
+	e := linear[T]{a: exp(-x.a)}
+	e.b = -x.b * e.a
+	ee := e.times(e)
+	gap := linear[T]{1 - ee.a, -ee.b}
+	over := gap.over()
+	a, b := psi.less(end.times(e)).times(over), end.less(psi.times(e)).times(over)
+	own := a.times(a).plus(b.times(b)).times(gap).times(x.over()).by(0.5)
+	mixed := a.times(b).times(e).by(2)
+	r.psi = own.plus(mixed).times(h)
+	k := x.times(h.over()).times(inv.over()) // p k
+	kk := k.times(k)
+	r.phi = kk.times(own.less(mixed)).times(h)
+	r.energy = kk.times(mixed).times(inv).by(-2)
 }

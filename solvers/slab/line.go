@@ -29,7 +29,7 @@ type coefs[T scalar] struct {
 
 // freeze keeps the values at the point only.
 func (c *coefs[T]) freeze() coefs[T] {
-	return coefs[T]{constant(c.inv[0]), constant(c.b[0]), constant(c.e[0]), constant(c.gap[0])}
+	return coefs[T]{constant(c.inv.a), constant(c.b.a), constant(c.e.a), constant(c.gap.a)}
 }
 
 // film is a layer of finite thickness.
@@ -37,8 +37,8 @@ type film[T scalar] struct {
 	layer int // of the stack
 	twin  int // its mirror image, or -1
 	d     float64
+	h     T // d
 	live  coefs[T]
-	still coefs[T] // live, frozen
 }
 
 // side is one end of a line.
@@ -47,7 +47,6 @@ type side[T scalar] struct {
 	layer int // of the stack
 	twin  int
 	live  coefs[T]
-	still coefs[T]
 	cut   bool // the half-space whose index is the cut-off
 	level bool // another half-space of the very same e
 }
@@ -77,12 +76,16 @@ type line[T scalar] struct {
 	origin float64  // extent of the films below the first
 	evened bool     // divide states by their larger part
 	steady bool     // scale films by constants that are positive
+	still  bool     // nothing but u moves
 	states [2][]state[T]
-	z      []series[T]
-	factor []series[T] // what a film's states are scaled by
+	rays   [2][]ray[T]
+	trigs  []trig[T]
+	z      []linear[T]
+	factor []linear[T] // what a film's states are scaled by
 	faces  []face[T]
 	shares []share[T]
 	tails  [2]share[T]
+	swing  swing[T]
 	foot   T    // what the state at the lower end is multiplied by
 	edges  [2]T // psi at the outer faces, and the decay beyond
 	rates  [2]T
@@ -120,9 +123,12 @@ func (q *line[T]) setup(w float64, s *Stack, tm, mirror bool, fade float64) {
 				f.d /= 2
 			}
 		}
+		f.h = num[T](f.d)
 		q.medium(w, &s.Layers[lo+i], &f.live)
 	}
 	q.states[0], q.states[1] = resize(q.states[0], n+1), resize(q.states[1], n+1)
+	q.rays[0], q.rays[1] = resize(q.rays[0], n+1), resize(q.rays[1], n+1)
+	q.trigs = resize(q.trigs, n)
 	q.z, q.factor = resize(q.z, n), resize(q.factor, n)
 	q.faces, q.shares = resize(q.faces, n), resize(q.shares, n)
 	q.anchor()
@@ -155,7 +161,7 @@ func (q *line[T]) medium(w float64, l *Layer, c *coefs[T]) {
 		return
 	}
 	c.inv, c.e = taylor[T](w, &l.Eps[2], q.fade), taylor[T](w, &l.Eps[1], q.fade)
-	c.b = inverse(&c.e, 3)
+	c.b = inverse(c.e)
 }
 
 // taylor turns derivatives in w into a series in t.
@@ -175,10 +181,10 @@ func part[T scalar](v complex128, factor, fade float64) T {
 func (q *line[T]) anchor() {
 	cut := -1
 	for i := range q.ends {
-		if q.ends[i].closure != open || re(sqrt(q.ends[i].live.e[0])) <= 0 {
+		if q.ends[i].closure != open || re(sqrt(q.ends[i].live.e.a)) <= 0 {
 			continue
 		}
-		if cut < 0 || re(sqrt(q.ends[i].live.e[0])) > re(sqrt(q.ends[cut].live.e[0])) {
+		if cut < 0 || re(sqrt(q.ends[i].live.e.a)) > re(sqrt(q.ends[cut].live.e.a)) {
 			cut = i
 		}
 	}
@@ -187,39 +193,36 @@ func (q *line[T]) anchor() {
 		c := &q.ends[cut].live
 		q.base = c.e
 		if q.tm {
-			r := inverse(&c.inv, 3)
-			q.sigma = mul(&c.e, &r, 3)
+			q.sigma = mul(c.e, inverse(c.inv))
 		}
 	}
 	for i := range q.ends {
 		e := &q.ends[i]
-		e.live.gap = sub(&e.live.e, &q.base)
+		e.live.gap = sub(e.live.e, q.base)
 		e.cut = i == cut
 		e.level = q.branch && !e.cut && e.closure == open && e.live.gap == series[T]{}
-		e.still = e.live.freeze()
 	}
 	q.top, q.ref = math.Inf(-1), -1
 	for i := range q.films {
 		f := &q.films[i]
-		f.live.gap = sub(&f.live.e, &q.base)
-		f.still = f.live.freeze()
-		if f.d > 0 && re(f.live.e[0]) > q.top {
-			q.top, q.ref = re(f.live.e[0]), i
+		f.live.gap = sub(f.live.e, q.base)
+		if f.d > 0 && re(f.live.e.a) > q.top {
+			q.top, q.ref = re(f.live.e.a), i
 		}
 	}
 }
 
 // rise is N less its base.
-func (q *line[T]) rise(u *series[T], live bool, n int) series[T] {
+func (q *line[T]) rise(u series[T]) series[T] {
 	if !q.branch {
-		return *u
+		return u
 	}
-	v := mul(u, u, n)
-	if !q.tm {
+	v := mul(u, u)
+	switch {
+	case !q.tm:
 		return v
+	case q.still:
+		return scale(v, q.sigma.a)
 	}
-	if live {
-		return mul(&q.sigma, &v, n)
-	}
-	return scale(&v, q.sigma[0])
+	return mul(q.sigma, v)
 }

@@ -84,7 +84,7 @@ func definite(q *line[complex128]) bool {
 	}
 	ok := true
 	q.media(func(c *coefs[complex128], _ float64) {
-		ok = ok && real(c.e[0]) > 0 && real(c.inv[0]) > 0
+		ok = ok && real(c.e.a) > 0 && real(c.inv.a) > 0
 	})
 	return ok
 }
@@ -98,8 +98,8 @@ func (s *Solver) kind(ctx context.Context, stack *Stack, q *line[complex128], k,
 	c := &s.search
 	*c = search{line: q, at: max(q.ref, 0), known: c.known[:0], found: c.found[:0], work: budget}
 	first := len(s.picks)
-	if q.tm && k == 0 && s.plates() && r.guided(q.films[0].live.e[0]) {
-		n2 := q.films[0].live.e[0]
+	if q.tm && k == 0 && s.plates() && r.guided(q.films[0].live.e.a) {
+		n2 := q.films[0].live.e.a
 		s.picks = append(s.picks, pick{tm: true, tem: true, uniform: s.uniform(), n2: real(n2), im: imag(n2)})
 	}
 	if definite(q) {
@@ -157,7 +157,7 @@ func (s *Solver) follow(ctx context.Context, stack *Stack, q *line[complex128], 
 	lossless := &s.real.lines[index(q.tm)]
 	lossless.setup(s.out.w, stack, q.tm, q.mirror, 1)
 	lossless.turn(k)
-	g := &s.gauges[0]
+	g := &s.ladders[0].gauges[0]
 	g.measure(lossless)
 	sp, n := g.count()
 	if n > maxFollowed {
@@ -233,10 +233,9 @@ func approach(q *line[complex128], n2 complex128, p *pick) (complex128, bool) {
 	m := q.meet(u)
 	last := math.Inf(1)
 	for i := range 12 {
-		q.u = series[complex128]{u, 1}
-		q.carry(&q.u, false, 1, m)
-		d := q.mismatch(m, 1)
-		du := d[0] / d[1]
+		q.look(u, m)
+		d := q.miss(m)
+		du := d.a / d.b
 		size := abs(du)
 		if !(size <= 0.3*last) && size > 1e-13*abs(u) || i == 0 && size > 0.2*abs(u) {
 			return 0, false

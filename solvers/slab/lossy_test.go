@@ -50,11 +50,9 @@ func TestThinMetal(t *testing.T) {
 				n := complex(mode.Neff, -mode.Kappa)
 				g1, g2 := cmplx.Sqrt(n*n-e1), cmplx.Sqrt(n*n-e2)
 				th := cmplx.Tanh(g2 * complex(w/lightSpeed*d/2, 0))
-				left, right := th*e1*g2, -e2*g1
+				left, right := g2*e1, -e2*g1*th
 				if mode.Symmetry == "even" {
 					left, right = g2*th*e1, -e2*g1
-				} else {
-					left, right = g2*e1, -e2*g1*th
 				}
 				if cmplx.Abs(left-right) > 1e-11*cmplx.Abs(left) {
 					t.Errorf("%s: residual %v of %v", mode.Symmetry, left-right, left)
@@ -174,6 +172,9 @@ func TestPlates(t *testing.T) {
 			}
 			if modes[0].Type != "TEM" || modes[0].Family != "TEM" || modes[0].GVD != 0 {
 				t.Errorf("the first mode is %+v", modes[0])
+			}
+			if !(modes[0].NgErr < 1e-11) || len(modes[0].Flags) != 0 { // the tolerance of ng above; N = eps leaves no doubt
+				t.Errorf("the first mode's bound %g, flags %v", modes[0].NgErr, modes[0].Flags)
 			}
 		})
 	}

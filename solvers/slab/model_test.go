@@ -57,8 +57,6 @@ func (m *model) stack() *Stack {
 // shift is how far a point is from the model's own, in x, p0 and p1.
 type shift [3]*big.Float
 
-func still() shift { return shift{zero(), zero(), zero()} }
-
 // characteristic is the mismatch of the whole stack at N, by plain transfer matrices
 // from the bottom to the top, at the shifted point.
 func (m *model) characteristic(tm bool, n2 num2, at shift) num2 {

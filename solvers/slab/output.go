@@ -100,35 +100,36 @@ func (o *output) label(m *solvers.Mode, p *pick, mirror bool) {
 }
 
 // fill writes a mode from a line that has been expanded and gathered.
-func fill[T scalar](o *output, q *line[T], norm *series[T], p *pick, m *solvers.Mode) {
+func fill[T scalar](o *output, q *line[T], norm linear[T], p *pick, m *solvers.Mode) {
 	o.label(m, p, q.mirror)
 	n2 := q.square()
-	n := root(&n2, 3)
-	b := series[T]{n[0], n[1] + n[0], n[2] + n[1], n[3] + n[2]} // beta/k0
-	m.Neff, m.Kappa = re(n[0]), 0-imag(widen(n[0]))
-	m.Ng = re(b[1])
-	m.GVD = 2 * re(b[2]) / (lightSpeed * o.w)
-	m.Beta3 = 6 * re(b[3]) / (lightSpeed * o.w * o.w)
+	n := root(n2)
+	at := widen(n.a)
+	m.Neff, m.Kappa = real(at), 0-imag(at)
+	m.Ng = re(n.a + n.b)
+	m.GVD = 2 * re(n.b+n.c) / (lightSpeed * o.w)
+	m.Beta3 = 6 * re(n.c+n.d) / (lightSpeed * o.w * o.w)
 	cut := 0.0
 	if q.branch {
-		cut = re(sqrt(q.base[0]))
+		cut = re(sqrt(q.base.a))
 	}
 	m.Flags = flagNone
 	if m.Neff-cut < nearCutoff {
 		m.Flags = flagNearCutoff
 	}
-	gradient(o, q, norm, &n2)
-	project(o, &n2, &n, m)
-	shape(o, q, widen(n[0]), m)
-	impedance(o, p, widen(n[0]), m)
+	gradient(o, q, norm, n2)
+	project(o, n2, n, m)
+	shape(o, q, at, m)
+	impedance(o, p, at, m)
 	m.Cutoff = o.cutoff(p)
 	sample(o, q, p, m)
+	bound(o, q, norm, n, m)
 }
 
 // project turns derivatives of N into those of the indices.
-func project[T scalar](o *output, n2, n *series[T], m *solvers.Mode) {
-	half := 1 / (2 * widen(n[0]))
-	turn := half * widen(n2[1]) / (2 * widen(n2[0]))
+func project[T scalar](o *output, n2, n series[T], m *solvers.Mode) {
+	half := widen(0.5 / n.a)
+	turn := half * widen(0.5*n2.b/n2.a)
 	for i := range o.params {
 		v := o.acc[0][i] * half
 		m.DNeff[i] = real(v)

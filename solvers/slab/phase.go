@@ -10,11 +10,10 @@ import "math"
 
 // rod is a film as the search for modes sees it: z = a (gap - v) with v = N - base.
 type rod struct {
-	a, gap   float64
-	d        float64
-	inv, b   float64 // times d
-	z, dz    float64 // at the last v, and in u
-	psi, phi float64 // the state it was left in
+	a, gap float64
+	d      float64
+	inv, b float64 // times d
+	z, dz  float64 // at the last v, and in u
 }
 
 // stop is an end as the search sees it.
@@ -42,8 +41,8 @@ func (g *gauge) measure(q *line[float64]) {
 		f := &q.films[i]
 		c := &f.live
 		g.rods[i] = rod{
-			a: c.inv[0] * c.b[0] * f.d * f.d, gap: c.gap[0],
-			d: f.d, inv: f.d * c.inv[0], b: f.d * c.b[0],
+			a: c.inv.a * c.b.a * f.d * f.d, gap: c.gap.a,
+			d: f.d, inv: f.d * c.inv.a, b: f.d * c.b.a,
 		}
 	}
 	for i := range q.ends {
@@ -53,15 +52,14 @@ func (g *gauge) measure(q *line[float64]) {
 			continue
 		}
 		s, c := &g.stops[i], &e.live
-		s.a, s.gap, s.p = c.inv[0]*c.b[0], c.gap[0], 1/c.inv[0]
+		s.a, s.gap, s.p = c.inv.a*c.b.a, c.gap.a, 1/c.inv.a
 		if e.level {
-			like := q.likeness(e, false, 0)
-			s.like = like[0]
+			s.like = q.likeness(c).a
 		}
 	}
-	g.sigma, g.branch, g.ref = q.sigma[0], q.branch, q.ref
+	g.sigma, g.branch, g.ref = q.sigma.a, q.branch, q.ref
 	if g.ref >= 0 {
-		g.top = q.films[g.ref].live.gap[0]
+		g.top = q.films[g.ref].live.gap.a
 	}
 }
 

@@ -18,7 +18,6 @@ func rx(x float64) num2         { return num2{fl(x), zero()} }
 func (a num2) add(b num2) num2  { return num2{zero().Add(a.re, b.re), zero().Add(a.im, b.im)} }
 func (a num2) sub(b num2) num2  { return num2{zero().Sub(a.re, b.re), zero().Sub(a.im, b.im)} }
 func (a num2) neg() num2        { return rx(0).sub(a) }
-func (a num2) timesI() num2     { return num2{zero().Neg(a.im), a.re} }
 func (a num2) times(x int) num2 { return a.mul(rx(float64(x))) }
 
 func (a num2) mul(b num2) num2 {

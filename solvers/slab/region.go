@@ -61,7 +61,7 @@ type limits struct{ size, low, high float64 }
 // false where there can be none.
 func (q *line[T]) where() (r region, ok bool, err error) {
 	if q.branch {
-		r.cut = real(csqrt(widen(q.base[0])))
+		r.cut = real(csqrt(widen(q.base.a)))
 	}
 	var l limits
 	if q.tm {
@@ -93,7 +93,7 @@ func (q *line[T]) limitsTE() limits {
 	l := limits{low: math.Inf(1), high: math.Inf(-1)}
 	top := math.Inf(-1)
 	q.media(func(c *coefs[T], _ float64) {
-		e := widen(c.e[0])
+		e := widen(c.e.a)
 		top = max(top, real(e))
 		l.low, l.high = min(l.low, imag(e)), max(l.high, imag(e))
 	})
@@ -121,10 +121,10 @@ func (q *line[T]) media(f func(c *coefs[T], d float64)) {
 func (q *line[T]) limitsTM(cut float64) (limits, error) {
 	turn, least, most := 0.0, math.Inf(1), 0.0
 	q.media(func(c *coefs[T], _ float64) {
-		b := widen(c.b[0])
-		turn = max(turn, math.Abs(cmplx.Phase(b)), math.Abs(cmplx.Phase(1/widen(c.inv[0]))))
+		b := widen(c.b.a)
+		turn = max(turn, math.Abs(cmplx.Phase(b)), math.Abs(cmplx.Phase(1/widen(c.inv.a))))
 		least = min(least, real(b))
-		most = max(most, abs(widen(c.e[0])))
+		most = max(most, abs(widen(c.e.a)))
 	})
 	if t := math.Tan(turn); turn < 0.7 {
 		part := t / (1 - t*t)
@@ -152,7 +152,7 @@ func (q *line[T]) silent(n float64) bool {
 	var before, blur float64
 	var admit complex128
 	q.media(func(c *coefs[T], d float64) {
-		e, ez := widen(c.e[0]), widen(c.inv[0])
+		e, ez := widen(c.e.a), widen(c.inv.a)
 		ratio := csqrt(ez / e)
 		a, da := ratio/ez, abs(e)/(n*n)
 		if da > 0.5 {
@@ -187,7 +187,7 @@ func (q *line[T]) seam(r *region) error {
 		if e.closure != open || !q.tm {
 			continue
 		}
-		ey, ez := widen(e.live.e[0]), widen(e.live.inv[0])
+		ey, ez := widen(e.live.e.a), widen(e.live.inv.a)
 		way := ey / ez
 		if math.Abs(imag(way)) < 1e-13*abs(way) && real(way) > 0 {
 			continue

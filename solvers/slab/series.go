@@ -9,71 +9,81 @@ import (
 // complex otherwise. One kernel serves both.
 type scalar interface{ float64 | complex128 }
 
-// series is a Taylor polynomial in t = (w - w0)/w0, lowest power first. The
-// functions below keep terms up to order n only and leave the others zero.
-type series[T scalar] [4]T
+// series is the Taylor polynomial a + b t + c t^2 + d t^3 in t = (w - w0)/w0. It is a
+// structure, and its arithmetic is written out, so that the compiler keeps it in registers.
+type series[T scalar] struct{ a, b, c, d T }
 
 // constant is the series with the value v.
-func constant[T scalar](v T) series[T] { return series[T]{v} }
+func constant[T scalar](v T) series[T] { return series[T]{a: v} }
 
-func add[T scalar](a, b *series[T]) series[T] {
-	return series[T]{a[0] + b[0], a[1] + b[1], a[2] + b[2], a[3] + b[3]}
+func add[T scalar](x, y series[T]) series[T] {
+	return series[T]{x.a + y.a, x.b + y.b, x.c + y.c, x.d + y.d}
 }
 
-func sub[T scalar](a, b *series[T]) series[T] {
-	return series[T]{a[0] - b[0], a[1] - b[1], a[2] - b[2], a[3] - b[3]}
+func sub[T scalar](x, y series[T]) series[T] {
+	return series[T]{x.a - y.a, x.b - y.b, x.c - y.c, x.d - y.d}
 }
 
-func scale[T scalar](a *series[T], s T) series[T] {
-	return series[T]{a[0] * s, a[1] * s, a[2] * s, a[3] * s}
+func scale[T scalar](x series[T], s T) series[T] {
+	return series[T]{x.a * s, x.b * s, x.c * s, x.d * s}
 }
 
-func mul[T scalar](a, b *series[T], n int) (c series[T]) {
-	c[0] = a[0] * b[0]
-	if n == 0 {
-		return c
+func mul[T scalar](x, y series[T]) series[T] {
+	return series[T]{
+		x.a * y.a,
+		x.a*y.b + x.b*y.a,
+		x.a*y.c + x.b*y.b + x.c*y.a,
+		x.a*y.d + x.b*y.c + x.c*y.b + x.d*y.a,
 	}
-	c[1] = a[0]*b[1] + a[1]*b[0]
-	if n == 1 {
-		return c
-	}
-	c[2] = a[0]*b[2] + a[1]*b[1] + a[2]*b[0]
-	if n == 2 {
-		return c
-	}
-	c[3] = a[0]*b[3] + a[1]*b[2] + a[2]*b[1] + a[3]*b[0]
-	return c
 }
 
-func inverse[T scalar](a *series[T], n int) (c series[T]) {
-	c[0] = 1 / a[0]
-	for k := 1; k <= n; k++ {
-		var s T
-		for j := 1; j <= k; j++ {
-			s += a[j] * c[k-j]
-		}
-		c[k] = -s * c[0]
-	}
-	return c
+func inverse[T scalar](x series[T]) (r series[T]) {
+	r.a = 1 / x.a
+	r.b = -x.b * r.a * r.a
+	r.c = -(x.b*r.b + x.c*r.a) * r.a
+	r.d = -(x.b*r.c + x.c*r.b + x.d*r.a) * r.a
+	return r
 }
 
 // root is the square root with the real part of its value not negative.
-func root[T scalar](a *series[T], n int) (r series[T]) {
-	r[0] = sqrt(a[0])
-	if n == 0 {
-		return r
-	}
-	half := 1 / (2 * r[0])
-	r[1] = a[1] * half
-	if n == 1 {
-		return r
-	}
-	r[2] = (a[2] - r[1]*r[1]) * half
-	if n == 2 {
-		return r
-	}
-	r[3] = (a[3] - 2*r[1]*r[2]) * half
+func root[T scalar](x series[T]) (r series[T]) {
+	r.a = sqrt(x.a)
+	half := 0.5 / r.a
+	r.b = x.b * half
+	r.c = (x.c - r.b*r.b) * half
+	r.d = (x.d - 2*r.b*r.c) * half
 	return r
+}
+
+// power is the exponential of a series.
+func power[T scalar](x series[T]) (r series[T]) {
+	r.a = exp(x.a)
+	r.b = x.b * r.a
+	r.c = (x.c + x.b*x.b/2) * r.a
+	r.d = (x.d + x.b*x.c + x.b*x.b*x.b/6) * r.a
+	return r
+}
+
+// linear is a + b t: what integrals need, and derivatives in u at the point.
+type linear[T scalar] struct{ a, b T }
+
+// first is a series to first order.
+func (x series[T]) first() linear[T] { return linear[T]{x.a, x.b} }
+
+func (x linear[T]) plus(y linear[T]) linear[T] { return linear[T]{x.a + y.a, x.b + y.b} }
+
+func (x linear[T]) less(y linear[T]) linear[T] { return linear[T]{x.a - y.a, x.b - y.b} }
+
+func (x linear[T]) by(s T) linear[T] { return linear[T]{x.a * s, x.b * s} }
+
+func (x linear[T]) times(y linear[T]) linear[T] {
+	return linear[T]{x.a * y.a, x.a*y.b + x.b*y.a}
+}
+
+// over is the inverse.
+func (x linear[T]) over() linear[T] {
+	r := 1 / x.a
+	return linear[T]{r, -x.b * r * r}
 }
 
 // sqrt is the principal square root. Its imaginary part is as accurate as
@@ -94,7 +104,7 @@ func csqrt(a complex128) complex128 {
 	if x == 0 && y == 0 {
 		return 0
 	}
-	m := math.Hypot(x, y)
+	m := length(x, y)
 	if x >= 0 {
 		r := math.Sqrt((m + x) / 2)
 		return complex(r, y/(2*r))
@@ -109,7 +119,26 @@ func modulus[T scalar](a T) float64 {
 	case float64:
 		return math.Abs(v)
 	case complex128:
-		return math.Hypot(real(v), imag(v))
+		return length(real(v), imag(v))
+	}
+	return 0
+}
+
+// length is the square root of x^2 + y^2.
+func length(x, y float64) float64 {
+	if s := x*x + y*y; s > 1e-280 && s < 1e280 {
+		return math.Sqrt(s)
+	}
+	return math.Hypot(x, y)
+}
+
+// rough is a size, from the absolute value to 1.5 times that.
+func rough[T scalar](a T) float64 {
+	switch v := any(a).(type) {
+	case float64:
+		return math.Abs(v)
+	case complex128:
+		return math.Abs(real(v)) + math.Abs(imag(v))
 	}
 	return 0
 }
@@ -161,21 +190,6 @@ func exp[T scalar](a T) T {
 	return r
 }
 
-// power is the exponential of a series.
-func power[T scalar](a *series[T], n int) (r series[T]) {
-	r[0] = exp(a[0])
-	if n > 0 {
-		r[1] = a[1] * r[0]
-	}
-	if n > 1 {
-		r[2] = (a[2] + a[1]*a[1]/2) * r[0]
-	}
-	if n > 2 {
-		r[3] = (a[3] + a[1]*a[2] + a[1]*a[1]*a[1]/6) * r[0]
-	}
-	return r
-}
-
 // num is a real number as a T.
 func num[T scalar](v float64) T {
 	var r T
@@ -186,4 +200,18 @@ func num[T scalar](v float64) T {
 		*p = complex(v, 0)
 	}
 	return r
+}
+
+// sincos is the sine and the cosine.
+func sincos[T scalar](a T) (sin, cos T) {
+	switch v := any(a).(type) {
+	case float64:
+		s, c := math.Sincos(v)
+		return num[T](s), num[T](c)
+	case complex128:
+		c, s, factor := scaledSincos(v)
+		c, s = c*complex(1/factor, 0), s*complex(1/factor, 0)
+		return from[T](s), from[T](c)
+	}
+	return sin, cos
 }

@@ -11,33 +11,36 @@ func (q *line[T]) moments(i int) (two, four float64) {
 	f, c := &q.films[i], &q.faces[i]
 	switch p := any(c).(type) {
 	case *face[float64]:
-		return momentsReal(re(q.z[i][0]), f.d, p)
+		z := re(q.z[i].a)
+		if z > 1 {
+			t := q.trig(i, q.z[i].a)
+			return standing(math.Sqrt(z), re(t.f[0]), re(t.f[1]), f.d, p)
+		}
+		return momentsReal(z, f.d, p)
 	case *face[complex128]:
-		return momentsComplex(widen(q.z[i][0]), f.d, p)
+		return momentsComplex(widen(q.z[i].a), f.d, p)
 	}
 	return 0, 0
 }
 
 func momentsReal(z, d float64, f *face[float64]) (two, four float64) {
-	switch {
-	case math.Abs(z) < 1:
-		return gauss(d, 1, func(y float64) float64 {
-			v := f.at(y, z, d)
-			return v * v
-		})
-	case z > 0:
-		return standing(math.Sqrt(z)/d, d, f)
+	if z < -1 {
+		return decaying(math.Sqrt(-z)/d, d, f)
 	}
-	return decaying(math.Sqrt(-z)/d, d, f)
+	return gauss(d, 1, func(y float64) float64 {
+		v := f.at(y, z, d)
+		return v * v
+	})
 }
 
 // standing integrates powers of psi = a cos qy + b sin qy through
-// psi^2 = m + r cos 2qy + s sin 2qy.
-func standing(q, d float64, f *face[float64]) (two, four float64) {
+// psi^2 = m + r cos 2qy + s sin 2qy, with x = qd, its cosine and sin x / x.
+func standing(x, cos, sinc, d float64, f *face[float64]) (two, four float64) {
+	q := x / d
 	a, b := f.psi, f.rise/q
 	m, r, s := (a*a+b*b)/2, (a*a-b*b)/2, a*b
-	x := q * d
-	s2, c2 := math.Sincos(2 * x)
+	sin := sinc * x
+	s2, c2 := 2*sin*cos, 1-2*sin*sin
 	s4, c4 := 2*s2*c2, 1-2*s2*s2
 	two = m*x + r*s2/2 + s*(1-c2)/2
 	four = m*m*x + r*r*(x/2+s4/8) + s*s*(x/2-s4/8) + m*r*s2 + m*s*(1-c2) + r*s*(1-c4)/4
@@ -92,13 +95,6 @@ func gauss(d float64, panels int, f func(float64) float64) (one, two float64) {
 func (f *face[T]) at(y float64, z T, d float64) T {
 	if d == 0 {
 		return f.psi
-	}
-	if w, ok := any(f).(*face[float64]); ok {
-		if v := re(z); v > 1 {
-			q := math.Sqrt(v) / d
-			sin, cos := math.Sincos(q * y)
-			return num[T](w.psi*cos + w.rise/q*sin)
-		}
 	}
 	r := y / d
 	if !evanescent(z) {

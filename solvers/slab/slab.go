@@ -28,7 +28,7 @@ type Solver struct {
 	params   int
 	real     pair[float64]
 	loss     pair[complex128]
-	gauges   [2]gauge
+	ladders  [2]ladder
 	picks    []pick
 	search   search
 	wells    []well

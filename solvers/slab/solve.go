@@ -5,7 +5,6 @@ import (
 	"context"
 	"fmt"
 	"math"
-	"slices"
 
 	"betaloom/solvers"
 )
@@ -32,23 +31,19 @@ type pair[T scalar] struct {
 func (s *Solver) lossless(ctx context.Context, stack *Stack, want int) ([]solvers.Mode, solvers.Count, error) {
 	s.picks = s.picks[:0]
 	mirror := mirrored(stack)
-	total := 0
-	for i := range s.real.lines {
+	for i := range s.ladders {
 		q := &s.real.lines[i]
 		q.setup(s.out.w, stack, i == 1, mirror, 1)
-		n, err := s.list(ctx, q, want)
-		if err != nil {
-			return nil, solvers.Count{}, err
-		}
-		total += n
+		s.ladders[i].climb(q)
 	}
-	count := solvers.Count{N: total, Proof: "node count"}
-	if total == 0 {
+	count := solvers.Count{N: s.ladders[0].total + s.ladders[1].total, Proof: "node count"}
+	if count.N == 0 {
 		count.Reason = s.reason(stack)
 		return nil, count, nil
 	}
-	slices.SortStableFunc(s.picks, before)
-	s.picks = s.picks[:min(want, len(s.picks))]
+	if err := s.list(ctx, want); err != nil {
+		return nil, solvers.Count{}, err
+	}
 	s.out.room(len(s.picks))
 	for i := range s.picks {
 		if err := ctx.Err(); err != nil {
@@ -69,61 +64,13 @@ func index(tm bool) int {
 	return 0
 }
 
-// before orders lossless modes from the highest index down; of equals, TE goes
-// before TM. Modes of one polarisation keep the order of their numbers, which is proven.
-func before(a, b pick) int {
-	if a.tm == b.tm {
-		return a.m - b.m
-	}
-	return cmp.Or(cmp.Compare(b.n2, a.n2), index(a.tm)-index(b.tm))
-}
-
-// lower orders lossy modes from the highest Re n down, ties as before.
+// lower orders lossy modes from the highest Re n down, ties TE before TM, then by number.
 func lower(a, b pick) int {
 	return cmp.Or(cmp.Compare(b.index(), a.index()), index(a.tm)-index(b.tm), a.m-b.m)
 }
 
 // index is Re n.
 func (p *pick) index() float64 { return real(csqrt(complex(p.n2, p.im))) }
-
-// list locates the first modes of one polarisation and counts all.
-func (s *Solver) list(ctx context.Context, q *line[float64], want int) (int, error) {
-	var spans [2]span
-	var counts [2]int
-	kinds := 1
-	if q.mirror {
-		kinds = 2
-	}
-	for k := range kinds {
-		q.turn(k)
-		s.gauges[k].measure(q)
-		spans[k], counts[k] = s.gauges[k].count()
-	}
-	total := counts[0] + counts[1]
-	for m := range min(want, total) {
-		if err := ctx.Err(); err != nil {
-			return 0, err
-		}
-		p := pick{tm: q.tm, m: m, odd: m%2 == 1, uniform: q.tm && s.uniform(), plain: s.plain()}
-		p.tem = m == 0 && q.tm && s.plates()
-		n2 := q.top
-		if !p.tem {
-			u := s.gauges[m%kinds].locate(&spans[m%kinds], m/kinds)
-			p.u = complex(u, 0)
-			n2 = q.base[0] + q.sigma[0]*u*u
-			if !q.branch {
-				n2 = u
-			}
-		}
-		p.n2 = n2
-		if !p.tem {
-			q.turn(m % kinds)
-			s.separate(q, &s.gauges[m%kinds], &p, m/kinds)
-		}
-		s.picks = append(s.picks, p)
-	}
-	return total, nil
-}
 
 // plates reports whether the stack lies between two metal planes and has one and the
 // same eps_y: its lowest mode is then TEM, with N = eps_y exactly.
@@ -164,7 +111,7 @@ func finish[T scalar](s *Solver, q *line[T], p *pick, m *solvers.Mode) {
 	}
 	if p.tem {
 		q.u = q.films[q.ref].live.e
-		q.carry(&q.u, true, 2, 0)
+		q.carry(0)
 	} else {
 		var slope T
 		q.meets = q.meet(u)
@@ -172,8 +119,7 @@ func finish[T scalar](s *Solver, q *line[T], p *pick, m *solvers.Mode) {
 		q.expand(u, slope, q.meets)
 	}
 	norm := q.gather(q.meets, q.shares[:len(q.films)], &q.tails)
-	fill(&s.out, q, &norm, p, m)
-	bound(&s.out, q, &norm, m)
+	fill(&s.out, q, norm, p, m)
 	unsure(p, m)
 }
 

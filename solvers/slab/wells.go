@@ -52,14 +52,14 @@ func (q *line[T]) narrow(lo, hi int) {
 	}
 	q.films, q.ref = q.films[lo:hi], 0
 	for i := range q.films {
-		if re(q.films[i].live.e[0]) > re(q.films[q.ref].live.e[0]) {
+		if re(q.films[i].live.e.a) > re(q.films[q.ref].live.e.a) {
 			q.ref = i
 		}
 	}
 }
 
 func (f *film[T]) beyond() side[T] {
-	return side[T]{closure: open, layer: f.layer, twin: f.twin, live: f.live, still: f.still}
+	return side[T]{closure: open, layer: f.layer, twin: f.twin, live: f.live}
 }
 
 func (q *line[T]) widened() {
@@ -72,12 +72,11 @@ func (q *line[T]) wells(u T, limit float64, dst []well) []well {
 	if len(q.films) < 3 {
 		return dst
 	}
-	q.u = series[T]{u, 1}
-	q.carryAll(&q.u)
+	q.lookAll(u)
 	lo, guides := 0, false
 	for i := range len(q.films) + 1 {
-		if i < len(q.films) && re(q.z[i][0]) > -limit*limit {
-			guides = guides || re(q.z[i][0]) > 0
+		if i < len(q.films) && re(q.z[i].a) > -limit*limit {
+			guides = guides || re(q.z[i].a) > 0
 			continue
 		}
 		if guides {
@@ -104,7 +103,7 @@ func (s *Solver) separate(q *line[float64], g *gauge, p *pick, number int) {
 		if ok && math.Abs(w.n2-p.n2) <= agree*p.n2 && u > 0 {
 			q.expand(u, slope, m)
 			n2 := q.square()
-			w.ng = n2[1]/(2*math.Sqrt(n2[0])) + math.Sqrt(n2[0])
+			w.ng = n2.b/(2*math.Sqrt(n2.a)) + math.Sqrt(n2.a)
 			kept = append(kept, w)
 		}
 		q.widened()
@@ -130,12 +129,6 @@ func (s *Solver) separate(q *line[float64], g *gauge, p *pick, number int) {
 	for _, o := range kept {
 		p.spread = max(p.spread, math.Abs(o.ng-w.ng))
 	}
-}
-
-// above counts the modes above u.
-func (g *gauge) above(u float64) int {
-	m, _ := g.phase(u)
-	return max(0, int(math.Ceil(m/math.Pi)))
 }
 
 // unsure widens the bounds of a mode that rounding cannot tell from another of
