@@ -1,6 +1,7 @@
 package scheduler
 
 import (
+	"bytes"
 	"context"
 	"crypto/sha256"
 	"encoding/hex"
@@ -86,6 +87,9 @@ func (f *folder) begin(ctx context.Context, o *Options, plan *Plan) error {
 	if err := f.clean(ctx); err != nil {
 		return err
 	}
+	if err := f.outdate(o.Sweep); err != nil {
+		return err
+	}
 	hash := sha256.Sum256(o.Sweep.Source)
 	r := f.record
 	r.SweepSHA256 = hex.EncodeToString(hash[:])
@@ -99,9 +103,26 @@ func (f *folder) begin(ctx context.Context, o *Options, plan *Plan) error {
 	if err := store.WriteFile(f.path(fileSweep), o.Sweep.Source); err != nil {
 		return fmt.Errorf("run: %w", err)
 	}
-	return writeJSON(f.path(fileGrid), resolved{
-		Physics: o.Sweep.Physics, Axes: o.Sweep.Axes, Columns: o.Sweep.Columns, Rows: o.Sweep.Rows,
-	}, "")
+	return writeJSON(f.path(fileGrid), resolve(o.Sweep), "")
+}
+
+// outdate forgets tables that were made for another grid.
+func (f *folder) outdate(sw *sweep.Sweep) error {
+	if f.record.Tables == nil {
+		return nil
+	}
+	before, err := os.ReadFile(f.path(fileGrid))
+	if err != nil {
+		return fmt.Errorf("run: %w", err)
+	}
+	now, err := encodeJSON(resolve(sw), "")
+	if err != nil {
+		return fmt.Errorf("run: %w", err)
+	}
+	if !bytes.Equal(before, now) {
+		f.record.Tables, f.record.Result = nil, nil
+	}
+	return nil
 }
 
 // adopt reads the folder's record, or makes a new one where it has none.

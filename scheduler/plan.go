@@ -46,17 +46,27 @@ func NewPlan(file string, sw *sweep.Sweep) (*Plan, error) {
 	return p, p.checkMessage(file, sw)
 }
 
-// roomForRun is what a job message holds besides its tile: run and name.
-const roomForRun = 4096
+// What a job message holds besides the physics, at most: the run, names
+// of columns and of the tile; a number with its comma, "-1.2345678901234567e-300,".
+const (
+	roomForRun    = 64 << 10
+	roomForNumber = 26
+)
 
 // checkMessage sees that a tile fits into a message, which its tables may
 // be too long for: a tile needs nothing outside itself, so it carries them.
 func (p *Plan) checkMessage(file string, sw *sweep.Sweep) error {
-	b, err := json.Marshal(p.Grid.Tile(0)) // no tile of a grid is larger
+	t := p.Grid.Tile(0) // no tile of the grid has more numbers
+	b, err := json.Marshal(t.Physics)
 	if err != nil {
 		return fmt.Errorf("tile: %w", err)
 	}
-	if len(b)+roomForRun <= queue.MaxJob {
+	numbers := len(t.Rows) * len(t.Columns)
+	for _, a := range t.Axes {
+		numbers += len(a.Values)
+	}
+	size := len(b) + roomForNumber*numbers
+	if size+roomForRun <= queue.MaxJob {
 		return nil
 	}
 	longest, rows := "", 0
@@ -66,7 +76,7 @@ func (p *Plan) checkMessage(file string, sw *sweep.Sweep) error {
 		}
 	}
 	return sweep.Diagnostics{diagnose(file, sw, "materials."+longest,
-		fmt.Sprintf("a table of %d rows, with which a tile takes %d bytes", rows, len(b)),
+		fmt.Sprintf("a table of %d rows, with which a tile takes %d bytes", rows, size),
 		fmt.Sprintf("tiles of at most %d bytes, the most that a message of the queue holds: a table of fewer rows serves as well, since it is fitted", queue.MaxJob-roomForRun))}
 }
 

@@ -11,6 +11,7 @@ import (
 	"betaloom/scheduler/grid"
 	"betaloom/schema"
 	"betaloom/schema/store"
+	"betaloom/schema/sweep"
 )
 
 // FormatFolder is the version of the run folder.
@@ -96,6 +97,10 @@ type resolved struct {
 	Rows    [][]float64        `json:"rows,omitempty"`
 }
 
+func resolve(sw *sweep.Sweep) resolved {
+	return resolved{Physics: sw.Physics, Axes: sw.Axes, Columns: sw.Columns, Rows: sw.Rows}
+}
+
 // ReadGrid gives the grid of a run folder.
 func ReadGrid(dir string) (*grid.Grid, error) {
 	var r resolved
@@ -121,15 +126,20 @@ func readJSON(path string, to any) error {
 }
 
 func writeJSON(path string, v any, indent string) error {
-	b, err := json.Marshal(v)
-	if err == nil && indent != "" {
-		b, err = json.MarshalIndent(v, "", indent)
-	}
+	b, err := encodeJSON(v, indent)
 	if err == nil {
-		err = store.WriteFile(path, append(b, '\n'))
+		err = store.WriteFile(path, b)
 	}
 	if err != nil {
 		return fmt.Errorf("run: %s: %w", path, err)
 	}
 	return nil
+}
+
+func encodeJSON(v any, indent string) ([]byte, error) {
+	b, err := json.Marshal(v)
+	if err == nil && indent != "" {
+		b, err = json.MarshalIndent(v, "", indent)
+	}
+	return append(b, '\n'), err
 }

@@ -12,10 +12,10 @@ import (
 
 // Status is where a run stands.
 type Status struct {
-	Record   *Record
-	Running  bool             // a process works in the folder now
-	Progress Progress         // tiles and points done are counted from the parts
-	Aside    []store.SetAside // the tiles that could not be solved
+	Record   *Record          `json:"record"`
+	Running  bool             `json:"running"`  // a process works in the folder now
+	Progress Progress         `json:"progress"` // tiles and points done are counted from the parts
+	Aside    []store.SetAside `json:"aside"`    // the tiles that could not be solved
 }
 
 // ReadStatus looks at a run folder, also while another process works in it.
@@ -24,7 +24,15 @@ func ReadStatus(ctx context.Context, dir string) (*Status, error) {
 	if err != nil {
 		return nil, err
 	}
+	st := &Status{Record: r}
+	if st.Running, err = store.Locked(filepath.Join(dir, fileLock)); err != nil {
+		return nil, err
+	}
 	g, err := ReadGrid(dir)
+	if st.Running && errors.Is(err, fs.ErrNotExist) {
+		st.Progress.Phase = Preparing
+		return st, nil // it is about to be written
+	}
 	if err != nil {
 		return nil, err
 	}
@@ -34,10 +42,6 @@ func ReadStatus(ctx context.Context, dir string) (*Status, error) {
 	}
 	t, err := newTiles(ctx, g, s)
 	if err != nil {
-		return nil, err
-	}
-	st := &Status{Record: r}
-	if st.Running, err = locked(dir); err != nil {
 		return nil, err
 	}
 	if st.Running {
@@ -70,16 +74,4 @@ func (st *Status) count(ctx context.Context, t *tiles) error {
 	}
 	st.Aside, err = t.aside(ctx, h)
 	return err
-}
-
-// locked reports whether another process holds the folder's lock.
-func locked(dir string) (bool, error) {
-	release, err := store.Lock(filepath.Join(dir, fileLock))
-	if errors.Is(err, store.ErrLocked) {
-		return true, nil
-	}
-	if err != nil {
-		return false, err
-	}
-	return false, release()
 }

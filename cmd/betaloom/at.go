@@ -10,7 +10,7 @@ import (
 	"text/tabwriter"
 
 	"betaloom/scheduler"
-	"betaloom/scheduler/grid"
+	"betaloom/scheduler/collate"
 	"betaloom/scheduler/surface"
 	"betaloom/schema"
 	"betaloom/schema/quantity"
@@ -25,7 +25,9 @@ type atCommand struct {
 
 // Help shows the command by example.
 func (atCommand) Help() string {
-	return `  betaloom at runs/nitride-film height=0.83um wavelength=1.5481um index_shift=0.004
+	return `Examples:
+
+  betaloom at runs/nitride-film height=0.83um wavelength=1.5481um index_shift=0.004
   betaloom at runs/nitride-film height=0.83um wavelength=1.5481um index_shift=0 --family TE0 --json
 
 Each value comes with a bound on its error, that of the solved points and
@@ -47,16 +49,19 @@ type bounded struct {
 
 // Run evaluates the surfaces of a run.
 func (c *atCommand) Run(con *console) error {
-	s, err := surface.Open(filepath.Join(c.Dir, "surfaces.arrow"))
-	if err != nil {
-		return folderError(c.Dir, err)
-	}
-	defer s.Close()
 	g, err := scheduler.ReadGrid(c.Dir)
 	if err != nil {
 		return folderError(c.Dir, err)
 	}
-	point, err := parsePoint(g, c.Values)
+	if !g.IsBox() {
+		return usage("at: the points of %s come from a file, so there is no surface between them; betaloom table shows what was solved", c.Dir)
+	}
+	s, err := surface.Open(filepath.Join(c.Dir, collate.SurfacesFile))
+	if err != nil {
+		return folderError(c.Dir, err)
+	}
+	defer s.Close()
+	point, err := parsePoint(g.Physics(), s.Axes(), c.Values)
 	if err != nil {
 		return err
 	}
@@ -68,8 +73,11 @@ func (c *atCommand) Run(con *console) error {
 	if err != nil {
 		return err
 	}
+	if len(families) == 0 {
+		return &endError{exitUnsolved, fmt.Sprintf("at: no point of %s has a guided mode; betaloom table %s --points says why", c.Dir, c.Dir)}
+	}
 	if len(answers) == 0 {
-		return usage("at: %s", strings.Join(absent, "; "))
+		return &endError{exitUnsolved, "at: " + strings.Join(absent, "\nat: ")}
 	}
 	if c.JSON {
 		e := json.NewEncoder(con.out)
@@ -154,11 +162,11 @@ func digits(b *bounded) string {
 	return fmt.Sprintf("%.*g", max(1, min(n, 16)), b.Value)
 }
 
-// parsePoint reads name=value arguments into the axes' order.
-func parsePoint(g *grid.Grid, args []string) ([]float64, error) {
+// parsePoint reads name=value arguments into the order of the surfaces' axes.
+func parsePoint(p *schema.Physics, axes []schema.AxisBlock, args []string) ([]float64, error) {
 	given := map[string]float64{}
 	for _, arg := range args {
-		name, v, err := parseValue(g.Physics(), arg)
+		name, v, err := parseValue(p, arg)
 		if err != nil {
 			return nil, err
 		}
@@ -168,10 +176,10 @@ func parsePoint(g *grid.Grid, args []string) ([]float64, error) {
 		given[name] = v
 	}
 	var point []float64
-	for _, a := range g.Axes() {
+	for _, a := range axes {
 		v, ok := given[a.Parameter]
 		if !ok && len(a.Values) > 1 {
-			return nil, usage("at: found no value for axis %s, expected %s=VALUE (%s)", a.Parameter, a.Parameter, axisText(g.Physics(), a))
+			return nil, usage("at: found no value for axis %s, expected %s=VALUE (%s)", a.Parameter, a.Parameter, axisText(p, a))
 		}
 		if !ok {
 			v = a.Values[0]
@@ -180,7 +188,7 @@ func parsePoint(g *grid.Grid, args []string) ([]float64, error) {
 		point = append(point, v)
 	}
 	for name := range given {
-		return nil, usage("at: found a value for %s, which is no axis of the sweep; the axes are %s", name, axisNames(g))
+		return nil, usage("at: found a value for %s, which is no axis of the sweep; the axes are %s", name, axisNames(axes))
 	}
 	return point, nil
 }
@@ -213,9 +221,9 @@ func axisText(p *schema.Physics, a schema.AxisBlock) string {
 	return quantity.Format(lo, q.Dimension) + " to " + quantity.Format(hi, q.Dimension)
 }
 
-func axisNames(g *grid.Grid) string {
+func axisNames(axes []schema.AxisBlock) string {
 	var names []string
-	for _, a := range g.Axes() {
+	for _, a := range axes {
 		names = append(names, a.Parameter)
 	}
 	return strings.Join(names, ", ")

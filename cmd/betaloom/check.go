@@ -10,6 +10,7 @@ import (
 	"betaloom/scheduler"
 	"betaloom/schema/quantity"
 	"betaloom/schema/sweep"
+	"betaloom/solvers/material"
 )
 
 type checkCommand struct {
@@ -20,7 +21,9 @@ type checkCommand struct {
 
 // Help shows the command by example.
 func (checkCommand) Help() string {
-	return `  betaloom check nitride-film.yaml
+	return `Examples:
+
+  betaloom check nitride-film.yaml
 
 Nothing is written and nothing but a few sample points is solved. All that
 is wrong with the file is listed at once, with line and column.`
@@ -50,6 +53,9 @@ type planAxis struct {
 
 // Run reads a sweep file and says what a run would do.
 func (c *checkCommand) Run(con *console) error {
+	if c.Workers < 0 {
+		return usage("check: found %d workers, expected 1 or more", c.Workers)
+	}
 	s, err := loadSweep(c.Sweep)
 	if err != nil {
 		return err
@@ -135,7 +141,11 @@ func bytesText(n int64) string {
 // loadSweep reads a sweep file; one that cannot be read is a fault of the
 // command line.
 func loadSweep(path string) (*sweep.Sweep, error) {
-	s, err := sweep.Load(path)
+	var builtin []string
+	for _, m := range material.Named() {
+		builtin = append(builtin, m.Name)
+	}
+	s, err := sweep.Load(path, builtin)
 	if err != nil && isPathError(err) {
 		return nil, &usageError{err}
 	}

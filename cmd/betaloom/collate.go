@@ -12,7 +12,9 @@ type collateCommand struct {
 
 // Help shows the command by example.
 func (collateCommand) Help() string {
-	return `  betaloom collate runs/nitride-film             a run does this at its end
+	return `Examples:
+
+  betaloom collate runs/nitride-film             a run does this at its end
   betaloom collate runs/nitride-film --partial   tables of an interrupted run
 
 Points that are not solved yet stand as failed in partial tables, with that

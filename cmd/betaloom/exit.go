@@ -6,6 +6,8 @@ import (
 	"io"
 
 	"betaloom/scheduler"
+	"betaloom/scheduler/collate"
+	"betaloom/schema/store"
 	"betaloom/schema/sweep"
 	"betaloom/solvers"
 )
@@ -52,6 +54,8 @@ func conclusion(w io.Writer, err error) exit {
 		input       *solvers.InputError
 		scope       *solvers.ScopeError
 		folder      *scheduler.FolderError
+		missing     *collate.MissingError
+		corrupt     *collate.CorruptError
 	)
 	switch {
 	case errors.As(err, &end):
@@ -65,7 +69,13 @@ func conclusion(w io.Writer, err error) exit {
 			fmt.Fprintln(w, d.String())
 		}
 		return exitInput
-	case errors.As(err, &input), errors.As(err, &scope), errors.As(err, &folder):
+	case errors.As(err, &missing):
+		fmt.Fprintf(w, "betaloom: %v; run the sweep again, or collate what is there with --partial\n", err)
+		return exitUnsolved
+	case errors.As(err, &corrupt):
+		fmt.Fprintf(w, "betaloom: %v; run the sweep again: it solves them anew\n", err)
+		return exitUnsolved
+	case errors.As(err, &input), errors.As(err, &scope), errors.As(err, &folder), errors.Is(err, store.ErrLocked):
 		fmt.Fprintf(w, "betaloom: %v\n", err)
 		return exitInput
 	}

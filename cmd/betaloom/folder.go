@@ -4,6 +4,8 @@ import (
 	"errors"
 	"fmt"
 	"io/fs"
+
+	"betaloom/scheduler"
 )
 
 func isPathError(err error) bool {
@@ -11,10 +13,14 @@ func isPathError(err error) bool {
 	return errors.As(err, &p)
 }
 
-// folderError passes an error on and turns the lack of a run's files into what to do about it.
+// folderError passes an error on and turns the lack of a run's files into
+// what to do about it.
 func folderError(dir string, err error) error {
-	if errors.Is(err, fs.ErrNotExist) {
-		return &usageError{fmt.Errorf("%s: found no run there, expected the folder of one (%w)", dir, err)}
+	if !errors.Is(err, fs.ErrNotExist) {
+		return err
 	}
-	return err
+	if _, record := scheduler.ReadRecord(dir); record != nil {
+		return usage("%s: found no run there, expected the folder of one (%w)", dir, err)
+	}
+	return &endError{exitUnsolved, fmt.Sprintf("%s: its tables are not written yet (%v); betaloom status %s says how far the run is", dir, err, dir)}
 }

@@ -11,6 +11,8 @@ package main
 
 import (
 	"context"
+	"errors"
+	"fmt"
 	"io"
 	"os"
 	"os/signal"
@@ -61,8 +63,12 @@ type leave int
 // run parses the arguments and runs the command they name.
 func run(con *console, args []string) (status exit) {
 	defer func() {
-		if code, ok := recover().(leave); ok {
-			status = exit(code)
+		switch v := recover().(type) {
+		case nil:
+		case leave:
+			status = exit(v)
+		default:
+			panic(v)
 		}
 	}()
 	var c commands
@@ -80,5 +86,22 @@ func run(con *console, args []string) (status exit) {
 	if err != nil {
 		return conclusion(con.err, &usageError{err})
 	}
-	return conclusion(con.err, parsed.Run(con))
+	out := &checked{w: con.out}
+	con.out = out
+	return conclusion(con.err, errors.Join(parsed.Run(con), out.err))
+}
+
+// checked keeps the first error of writing results, so that one which were
+// lost never passes for one that was given.
+type checked struct {
+	w   io.Writer
+	err error
+}
+
+func (c *checked) Write(p []byte) (int, error) {
+	n, err := c.w.Write(p)
+	if err != nil && c.err == nil {
+		c.err = fmt.Errorf("results: %w", err)
+	}
+	return n, err
 }

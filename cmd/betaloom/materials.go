@@ -16,7 +16,9 @@ type materialsCommand struct {
 
 // Help shows the command by example.
 func (materialsCommand) Help() string {
-	return `  betaloom materials            all of them
+	return `Examples:
+
+  betaloom materials            all of them
   betaloom materials nitride    those with nitride in their name
 
 A name stands in a sweep file as   film: {named: silicon-nitride}`

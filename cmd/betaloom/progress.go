@@ -46,6 +46,11 @@ func (m *meter) show(p scheduler.Progress) {
 	if p.Phase == m.phase && time.Since(m.said) < lineInterval {
 		return
 	}
+	if m.phase == scheduler.Solving && p.Phase == scheduler.Collating {
+		solved := p
+		solved.Phase = scheduler.Solving
+		fmt.Fprintln(m.w, progressLine(solved))
+	}
 	m.phase, m.said = p.Phase, time.Now()
 	fmt.Fprintln(m.w, progressLine(p))
 }

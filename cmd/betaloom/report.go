@@ -13,7 +13,9 @@ type reportCommand struct {
 
 // Help shows the command by example.
 func (reportCommand) Help() string {
-	return `  betaloom report runs/nitride-film
+	return `Examples:
+
+  betaloom report runs/nitride-film
 
 The page stands in the folder as report.html and needs nothing beside it.
 A run writes it at its end; this writes it anew from the tables.`

@@ -9,6 +9,7 @@ import (
 	"runtime/debug"
 	"slices"
 	"strings"
+	"sync"
 
 	"betaloom/scheduler"
 	"betaloom/scheduler/collate"
@@ -28,7 +29,9 @@ type runCommand struct {
 
 // Help shows the command by example.
 func (runCommand) Help() string {
-	return `  betaloom run nitride-film.yaml
+	return `Examples:
+
+  betaloom run nitride-film.yaml
   betaloom run nitride-film.yaml --out /data/film --workers 8
 
 Run it again after an interruption, or after the box has grown: only what is
@@ -79,7 +82,10 @@ func (c *runCommand) again() string {
 
 // trouble writes what a person would want to know while it happens.
 func trouble(w io.Writer) func(worker.Event) {
+	var one sync.Mutex // slots speak at the same time
 	return func(e worker.Event) {
+		one.Lock()
+		defer one.Unlock()
 		switch e.Kind {
 		case worker.TileRetried, worker.TileSetAside, worker.QueueTrouble, worker.MessageRefused:
 			fmt.Fprintf(w, "%s: %.12s attempt %d: %v\n", e.Kind, e.Tile, e.Attempt, e.Err)

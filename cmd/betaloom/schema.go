@@ -6,7 +6,9 @@ type schemaCommand struct{}
 
 // Help shows the command by example.
 func (schemaCommand) Help() string {
-	return `  betaloom schema > betaloom.schema.json
+	return `Examples:
+
+  betaloom schema > betaloom.schema.json
 
 An editor with YAML support then completes and checks sweep files.`
 }

@@ -14,7 +14,9 @@ type statusCommand struct {
 
 // Help shows the command by example.
 func (statusCommand) Help() string {
-	return `  betaloom status runs/nitride-film          also while the run is under way
+	return `Examples:
+
+  betaloom status runs/nitride-film          also while the run is under way
   betaloom status runs/nitride-film --json   for a program`
 }
 

@@ -17,12 +17,15 @@ type tableCommand struct {
 
 // Help shows the command by example.
 func (tableCommand) Help() string {
-	return `  betaloom table runs/nitride-film --columns wavelength_m,height_m,neff,neff_err --where 'family == "TE0"'
+	return `Examples:
+
+  betaloom table runs/nitride-film --columns wavelength_m,height_m,neff,neff_err --where 'family == "TE0"'
   betaloom table runs/nitride-film --where 'abs(gvd_ps2_per_km) < 1 and index_shift == 0'
   betaloom table runs/nitride-film --points --where 'state == "failed"' --format jsonl
 
 A number in a condition is in its column's unit. A missing value is an empty
-field in CSV and null in JSON, and meets no condition.`
+field in CSV and null in JSON. A condition on a missing number, or one that has
+no value, is not met; a missing text compares as the empty text.`
 }
 
 // Run writes rows to standard output.

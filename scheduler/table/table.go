@@ -163,14 +163,8 @@ func (q *query) write(ctx context.Context, f *column.File, w io.Writer) (rows in
 // rows writes those of a batch that pass.
 func (q *query) rows(p printer, b *column.Batch) (written int, err error) {
 	for row := range b.Rows {
-		if q.filter != nil {
-			pass, err := q.filter.passes(b, row)
-			if err != nil {
-				return written, err
-			}
-			if !pass {
-				continue
-			}
+		if q.filter != nil && !q.filter.passes(b, row) {
+			continue
 		}
 		if err := p.row(b, row); err != nil {
 			return written, err

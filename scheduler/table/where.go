@@ -169,15 +169,17 @@ func (f *filter) bind(place func(name string) int) {
 	}
 }
 
-// passes reports whether a row is to be written.
-func (f *filter) passes(b *column.Batch, row int) (bool, error) {
+// passes reports whether a row is to be written. One for which the condition
+// cannot be evaluated, as log(0), does not meet it.
+func (f *filter) passes(b *column.Batch, row int) bool {
 	f.batch, f.row = b, row
 	for _, place := range f.numbers {
 		if math.IsNaN(f.number(place)) {
-			return false, nil
+			return false
 		}
 	}
-	return f.condition.True(f.value)
+	met, err := f.condition.True(f.value)
+	return err == nil && met
 }
 
 // value gives what a name of the condition stands for.

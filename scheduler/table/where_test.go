@@ -22,9 +22,7 @@ func FuzzWhere(f *testing.F) {
 		}
 		if p, err := parseFilter(where, columns); err == nil {
 			p.bind(func(name string) int { return column.Index(columns)[name] })
-			if _, err := p.passes(column.NewBatch(columns, nil, 1), 0); err != nil {
-				t.Logf("evaluation: %v", err)
-			}
+			p.passes(column.NewBatch(columns, nil, 1), 0)
 		}
 	})
 }

@@ -3,6 +3,7 @@ package store
 import (
 	"errors"
 	"fmt"
+	"io/fs"
 	"os"
 
 	"golang.org/x/sys/unix"
@@ -28,4 +29,25 @@ func Lock(path string) (release func() error, err error) {
 		err = ErrLocked
 	}
 	return nil, fmt.Errorf("lock: %s: %w", path, err)
+}
+
+// Locked reports whether another process holds the lock of path. It needs no
+// more than to read it.
+func Locked(path string) (bool, error) {
+	f, err := os.Open(path)
+	if errors.Is(err, fs.ErrNotExist) {
+		return false, nil
+	}
+	if err != nil {
+		return false, fmt.Errorf("lock: %w", err)
+	}
+	defer f.Close()
+	err = flock(f, unix.LOCK_SH|unix.LOCK_NB)
+	if errors.Is(err, unix.EWOULDBLOCK) {
+		return true, nil
+	}
+	if err != nil {
+		return false, fmt.Errorf("lock: %s: %w", path, err)
+	}
+	return false, nil
 }

@@ -1,6 +1,10 @@
 package sweep
 
-import "betaloom/schema"
+import (
+	"slices"
+
+	"betaloom/schema"
+)
 
 // materialForm is the form of one material.
 func materialForm() form[schema.Material] {
@@ -31,7 +35,7 @@ func plainMaterialKeys() []key[schema.Material] {
 	type m = schema.Material
 	return []key[m]{
 		keyOf("named", "a built-in material; `betaloom materials` lists them",
-			bare(plainText{"the name of a built-in material, such as fused-silica", builtinPattern, "", maxName}),
+			builtin{bare(plainText{"the name of a built-in material, such as fused-silica", builtinPattern, "", maxName})},
 			func(m *m, v string) { m.Named = v }),
 		keyOf("index", "refractive index n", number(pureOf(positive, "1.45")), func(m *m, v *schema.Number) { m.Index = v }),
 		keyOf("permittivity", "relative permittivity, real part", number(pureOf(positive, "4.4")), func(m *m, v *schema.Number) { m.Permittivity = v }),
@@ -71,4 +75,16 @@ func sellmeierForm() form[*schema.Sellmeier] {
 				func(s *schema.Sellmeier, v [][2]schema.Number) { s.Terms = v })),
 		},
 	})
+}
+
+// builtin is the form of the name of a built-in material.
+type builtin struct{ form[string] }
+
+func (b builtin) read(r *reader, at place) (string, bool) {
+	name, ok := b.form.read(r, at)
+	if !ok || r.builtin == nil || slices.Contains(r.builtin, name) {
+		return name, ok
+	}
+	r.fault(at.path, "the unknown built-in material "+name, "one of those that `betaloom materials` lists"+r.hint(name, r.builtin))
+	return name, false
 }

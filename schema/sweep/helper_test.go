@@ -28,7 +28,7 @@ func read(t *testing.T, file string) []byte {
 // load reads a good sweep file.
 func load(t *testing.T, name string) *sweep.Sweep {
 	t.Helper()
-	s, err := sweep.Load(filepath.Join("testdata/good", name))
+	s, err := sweep.Load(filepath.Join("testdata/good", name), nil)
 	if err != nil {
 		t.Fatal(err)
 	}

@@ -173,20 +173,20 @@ func (broken) Read([]byte) (int, error) { return 0, errors.New("the disk is gone
 // stands for a table.
 func TestLoad(t *testing.T) {
 	dir := t.TempDir()
-	if _, err := sweep.Load(filepath.Join(dir, "none.yaml")); !errors.Is(err, os.ErrNotExist) {
+	if _, err := sweep.Load(filepath.Join(dir, "none.yaml"), nil); !errors.Is(err, os.ErrNotExist) {
 		t.Errorf("found the error %v, expected that there is no such file", err)
 	}
 	path := filepath.Join(dir, "a.yaml")
 	if err := os.WriteFile(path, []byte(slab(t, "{index: 2}", "{table: .}")), 0o644); err != nil {
 		t.Fatal(err)
 	}
-	if _, err := sweep.Load(path); err == nil || !strings.Contains(err.Error(), "not a regular file") {
+	if _, err := sweep.Load(path, nil); err == nil || !strings.Contains(err.Error(), "not a regular file") {
 		t.Errorf("found the error %v, expected one that names no regular file", err)
 	}
 	if err := os.WriteFile(path, bytes.Repeat([]byte("#"), sweep.MaxFile+1), 0o644); err != nil {
 		t.Fatal(err)
 	}
-	if _, err := sweep.Load(path); err == nil || !strings.Contains(err.Error(), "a file of more than") {
+	if _, err := sweep.Load(path, nil); err == nil || !strings.Contains(err.Error(), "a file of more than") {
 		t.Errorf("found the error %v, expected one that says the limit", err)
 	}
 }

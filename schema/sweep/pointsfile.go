@@ -73,8 +73,7 @@ func (s *sheet) pointsHeader(p *points) ([]scale, bool) {
 }
 
 // splitHeader takes "width [um]" or "width_um" apart. Without brackets the
-// last word is a unit if it can be that of a length, a frequency, an angle or a temperature, as
-// in the columns of the tables.
+// last word is a unit if it is one of columnUnit's, as in the tables' columns.
 func splitHeader(text string) (name string, unit quantity.Unit, err error) {
 	name, rest, found := strings.Cut(text, "[")
 	if !found {
@@ -93,20 +92,24 @@ func splitColumn(text string) (name string, unit quantity.Unit, err error) {
 	if at <= 0 {
 		return text, unit, nil
 	}
-	suffix := text[at+1:]
-	if suffix == "hz" { // as the tables write it
-		suffix = "Hz"
+	if text[at+1:] == "hz" { // as the tables write it
+		text = text[:at] + "_Hz"
 	}
-	u, err := quantity.ParseUnit(suffix)
-	if err != nil || !columnUnits[u.Dimension] {
+	if !columnUnit(text[at+1:]) {
 		return text, unit, nil
 	}
-	return text[:at], u, nil
+	unit, err = quantity.ParseUnit(text[at+1:])
+	return text[:at], unit, err
 }
 
-// columnUnits are the kinds of unit that a column's name may end in.
-var columnUnits = map[schema.Dimension]bool{
-	{Length: 1}: true, {Time: -1}: true, {Angle: 1}: true, {Temperature: 1}: true,
+// columnUnit reports whether a column's name may end in the unit. Units that
+// are words or letters a parameter's own name may end in are not among them.
+func columnUnit(word string) bool {
+	switch word {
+	case "nm", "um", "mm", "m", "Hz", "kHz", "MHz", "GHz", "THz", "deg", "K", "degC":
+		return true
+	}
+	return false
 }
 
 func (s *sheet) pointsRows(p *points, units []scale) {

@@ -19,6 +19,7 @@ type reader struct {
 	src  []byte
 	open func(string) (io.ReadCloser, error)
 
+	builtin  []string // names of built-in materials; nil: any
 	places   map[string]mark
 	problems Diagnostics
 	dropped  int // problems beyond maxProblems

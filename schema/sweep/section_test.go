@@ -1,8 +1,11 @@
 package sweep_test
 
 import (
+	"errors"
 	"io"
 	"math"
+	"os"
+	"path/filepath"
 	"strings"
 	"testing"
 
@@ -119,6 +122,7 @@ func TestPointsHeaders(t *testing.T) {
 		"frequency_THz,height [mm],tilt_deg":          {"frequency", "height", "tilt"},
 		"wavelength [m],height_um,temperature_K,n_s":  {"wavelength", "height", "temperature", "n_s"},
 		"wavelength_m,height_um,width_in [um],temp_1": {"wavelength", "height", "width_in", "temp_1"},
+		"wavelength_m,height_um,shift_in,slope_m [1]": {"wavelength", "height", "shift_in", "slope_m"},
 	} {
 		t.Run(head, func(t *testing.T) {
 			row := strings.TrimSuffix(strings.Repeat("1,", len(want)), ",")
@@ -160,9 +164,27 @@ func TestAt(t *testing.T) {
 
 // TestExample: the project's main example is accepted.
 func TestExample(t *testing.T) {
-	s, err := sweep.Load("../../testdata/sweeps/nitride-film.yaml")
+	s, err := sweep.Load("../../testdata/sweeps/nitride-film.yaml", []string{"silicon-nitride", "fused-silica"})
 	if err != nil {
 		t.Fatal(err)
 	}
 	equal(t, s.Name, "nitride-film")
+}
+
+// TestBuiltinMaterials: a name that is not built in is one fault among the
+// others, and what was probably meant is named.
+func TestBuiltinMaterials(t *testing.T) {
+	path := filepath.Join(t.TempDir(), "film.yaml")
+	src := slab(t, "{index: 2}", "{named: silicn-nitride}", "{index: 1.45}", "{index: -2}")
+	if err := os.WriteFile(path, []byte(src), 0o644); err != nil {
+		t.Fatal(err)
+	}
+	_, err := sweep.Load(path, []string{"silicon-nitride", "fused-silica"})
+	var list sweep.Diagnostics
+	if !errors.As(err, &list) || len(list) != 2 {
+		t.Fatalf("found %v, expected two diagnostics", err)
+	}
+	if got := list[0]; got.Path != "materials.film.named" || got.Column < 10 || !strings.Contains(got.Expected, "did you mean silicon-nitride?") {
+		t.Errorf("found %v, expected the place of the name and what was meant", got)
+	}
 }

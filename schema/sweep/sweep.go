@@ -34,14 +34,15 @@ func (s *Sweep) At(path string) (line, column int) {
 }
 
 // Load reads the sweep file at path, and the tables and points files that it
-// names relative to its folder. The error is Diagnostics for anything that
-// is wrong in a file.
-func Load(path string) (*Sweep, error) {
+// names relative to its folder. builtin are the names of the built-in
+// materials; with nil any name passes. The error is Diagnostics for anything
+// that is wrong in a file.
+func Load(path string, builtin []string) (*Sweep, error) {
 	src, err := readLimited(path)
 	if err != nil {
 		return nil, fmt.Errorf("sweep file: %w", err)
 	}
-	return Parse(path, src, beside(path))
+	return parse(&reader{file: path, src: src, open: beside(path), builtin: builtin})
 }
 
 func readLimited(path string) ([]byte, error) {
@@ -71,9 +72,14 @@ func beside(path string) func(string) (io.ReadCloser, error) {
 }
 
 // Parse reads a sweep file from src. file is its name in diagnostics; open
-// reads the tables and points files that it names. The error is Diagnostics.
+// reads the tables and points files that it names. Any name of a built-in
+// material passes. The error is Diagnostics.
 func Parse(file string, src []byte, open func(name string) (io.ReadCloser, error)) (*Sweep, error) {
-	r := &reader{file: file, src: src, open: open, places: map[string]mark{}, tables: map[string]*table{}, profiles: map[string]text{}, odd: map[string]bool{}}
+	return parse(&reader{file: file, src: src, open: open})
+}
+
+func parse(r *reader) (*Sweep, error) {
+	r.places, r.tables, r.profiles, r.odd = map[string]mark{}, map[string]*table{}, map[string]text{}, map[string]bool{}
 	root, ok := r.document()
 	if !ok {
 		return nil, r.result()
@@ -83,6 +89,6 @@ func Parse(file string, src []byte, open func(name string) (io.ReadCloser, error
 	if err := r.result(); err != nil {
 		return nil, err
 	}
-	s.Source, s.places = src, r.places
+	s.Source, s.places = r.src, r.places
 	return s, nil
 }
