@@ -257,8 +257,8 @@ func TestErrors(t *testing.T) {
 		"above":       {"TE0", []float64{1.4e-6, 1.5e-6, 0}, "thickness: found 1.5 um, expected 400 nm to 1 um"},
 		"nan":         {"TE0", []float64{math.NaN(), 0.5e-6, 0}, "wavelength: found NaN"},
 		"one value":   {"TE0", []float64{1.4e-6, 0.5e-6, 0.001}, "index_shift: found 0.001, expected 0 (the axis has this value only)"},
-		"absent":      {"TE1", []float64{1.7e-6, 0.4e-6, 0}, "family TE1 is not guided at wavelength=1.7 um, thickness=400 nm, index_shift=0"},
-		"absent near": {"TE1", []float64{1.69e-6, 0.41e-6, 0}, "family TE1 is not guided at the neighbouring grid point"},
+		"absent":      {"TE1", []float64{1.7e-6, 0.4e-6, 0}, "family TE1 has no value at wavelength=1.7 um, thickness=400 nm, index_shift=0: it is not guided there, or the point failed or was excluded (points.parquet says which)"},
+		"absent near": {"TE1", []float64{1.69e-6, 0.41e-6, 0}, "family TE1 has no value at the neighbouring grid point"},
 	}
 	for name, c := range cases {
 		t.Run(name, func(t *testing.T) {

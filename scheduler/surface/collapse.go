@@ -9,7 +9,9 @@ type tensor struct {
 	values  []float64
 	spare   []float64
 	noise   []float64
+	floor   []float64 // the part of noise that is the nodes' own bounds and rounding
 	next    []float64
+	lower   []float64 // floor as next is noise
 	scale   []float64
 	missing []bool
 	unbound []bool
@@ -23,7 +25,7 @@ type tensor struct {
 
 func newTensor(count int) *tensor {
 	return &tensor{
-		count: count, noise: make([]float64, count), next: make([]float64, count),
+		count: count, noise: make([]float64, count), floor: make([]float64, count), lower: make([]float64, count), next: make([]float64, count),
 		scale: make([]float64, count), missing: make([]bool, count), unbound: make([]bool, count),
 		rules: make([]rule, count), apart: make([][2]differences, count), own: make([]float64, count),
 	}
@@ -58,6 +60,7 @@ func (x *tensor) collapse(l *lane, rules []rule, rest int, lines [2]int) {
 	x.errors(l, out, lines)
 	x.values, x.spare = out, x.values[:cap(x.values)]
 	x.noise, x.next = x.next, x.noise
+	x.floor, x.lower = x.lower, x.floor
 }
 
 // plainly is sum for all quantities without derivatives at once.
@@ -100,10 +103,10 @@ func (x *tensor) sum(l *lane, r *rule, w []float64, nodes, data, at int) float64
 }
 
 // through is the bound of the data through the weights, with rounding.
-func (x *tensor) through(r *rule, s *scheme) float64 {
+func (x *tensor) through(noise []float64, r *rule, s *scheme) float64 {
 	bound := 0.0
 	for j, from := range r.from[:s.data] {
-		bound += s.sums[j] * (x.noise[from] + rounding*x.scale[from])
+		bound += s.sums[j] * (noise[from] + rounding*x.scale[from])
 	}
 	return bound
 }

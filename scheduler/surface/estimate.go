@@ -29,7 +29,19 @@ const (
 	// least is the least gain per node where there are few to tell it.
 	least = 0.05
 	// leastPair is the same between two nodes with derivatives, against the curvature.
-	leastPair = 0.01
+	leastPair = 0.15
+	// sharePair and shareIndex are the shares of the value that a pair without derivatives may miss
+	// beside its rise, the latter for neff and ng.
+	sharePair  = 0.16
+	shareIndex = 0.02
+	// doubtful and hopeless are the rates from which on a grid is taken to resolve a surface
+	// badly, and not at all; steep is the same for neff and ng, whose derivatives help; peak is how far above its
+	// nodes a quantity may rise between them, in their magnitudes. All four were set by
+	// comparison with slabs solved between the nodes of coarse grids.
+	doubtful = 0.4
+	hopeless = 0.6
+	steep    = 1.6
+	peak     = 10
 )
 
 // errors sets next to the bounds after a lane: those of the data through the
@@ -46,12 +58,13 @@ func (x *tensor) errors(l *lane, out []float64, lines [2]int) {
 		for i, at := range lines {
 			switch {
 			case s.nodes > 2:
-				worst = max(worst, x.apart[f][i].estimate(s, &all))
+				worst = max(worst, x.apart[f][i].estimate(s, &all), x.unresolved(l, f, s, &all, at))
 			default:
 				worst = max(worst, x.pair(l, r, s, out[at*x.count+f], at))
 			}
 		}
-		x.next[f] = x.through(r, s) + worst
+		x.next[f] = x.through(x.noise, r, s) + worst
+		x.lower[f] = x.through(x.floor, r, s)
 	}
 }
 
@@ -60,7 +73,7 @@ func (x *tensor) compare(l *lane, out []float64, lines [2]int) {
 	for f := range x.count {
 		r := &x.rules[f]
 		s := l.scheme(r.kind)
-		noise := 2 * x.through(r, s)
+		noise := 2 * x.through(x.floor, r, s)
 		x.own[f] = 0
 		for i, at := range lines {
 			d := &x.apart[f][i]
@@ -136,15 +149,48 @@ func (d *differences) estimate(s *scheme, all *shared) float64 {
 	return safety * worst
 }
 
+// unresolved is what the estimate must not be below where the rates say that more nodes
+// hardly help, as across an anti-crossing narrower than a cell: neff and ng may then lie anywhere between
+// their neighbours, kappa likewise, and the others, which peak where neff bends, above all of them. Where the grid
+// resolves the surface, the powers make it vanish against the estimate.
+func (x *tensor) unresolved(l *lane, f int, s *scheme, all *shared, at int) float64 {
+	rate := max(all.index, all.median)
+	lo, hi := x.span(l, f, at)
+	if f == fNeff || f == fNg {
+		return (hi - lo) * math.Pow(min(1, steep*rate), float64(3*(s.data*s.nodes-1)))
+	}
+	share := min(1, max(0, (rate-doubtful)/(hopeless-doubtful)))
+	size := hi - lo
+	if f != fKappa {
+		size += peak * max(math.Abs(lo), math.Abs(hi))
+	}
+	return share * share * share * size
+}
+
+// span is the range of a quantity at the four nearest nodes of a line.
+func (x *tensor) span(l *lane, f, at int) (lo, hi float64) {
+	line := x.values[at*l.n*x.count:]
+	lo, hi = math.Inf(1), math.Inf(-1)
+	for _, p := range l.near[:min(4, l.n)] {
+		v := line[p*x.count+f]
+		lo, hi = min(lo, v), max(hi, v)
+	}
+	return lo, hi
+}
+
 // pair is the estimate between two nodes. With derivatives the straight line and the
 // nearest node's Taylor polynomial against the value give the curvature, the curvature against the rise the
-// rate. Without, nothing is known but the rise: the bound is that and a small share of the value.
+// rate. Without, nothing is known but the rise: the bound is that and a share of the value.
 func (x *tensor) pair(l *lane, r *rule, s *scheme, full float64, at int) float64 {
 	line := x.values[at*l.n*x.count:]
 	a, b := line[r.from[0]], line[x.count+r.from[0]]
 	rise := math.Abs(a - b)
 	if s.data == 1 {
-		return rise + safety*least*least*max(math.Abs(a), math.Abs(b))
+		share := sharePair
+		if r.from[0] == fNeff || r.from[0] == fNg {
+			share = shareIndex
+		}
+		return rise + share*max(math.Abs(a), math.Abs(b))
 	}
 	bend := max(math.Abs(full-x.sum(l, r, s.line[:], 2, 1, at)), math.Abs(full-x.sum(l, r, s.w[1][:], 1, s.data, at)))
 	return safety * bend * max(min(1, quotient(bend, rise)), leastPair)

@@ -55,18 +55,21 @@ func (e *RangeError) Error() string {
 	return fmt.Sprintf("surface: %s: found %s, expected %s to %s", e.Axis, format(e.Value), format(e.Lo), format(e.Hi))
 }
 
-// AbsentError says that a family is not guided at a point, or, where Between
-// is set, that it is not at a node next to the point, so that nothing is
-// known of it there.
+// AbsentError says that a family has no value at a point, or, where Between
+// is set, that it has none at a node next to the point, so that nothing is
+// known of it there. Which of the possible reasons it is, the surface does not hold.
 type AbsentError struct {
 	Family  string
 	At      string // the node without it: name=value, ...
 	Between bool
 }
 
+// absence names the reasons why a family may have no value at a node.
+const absence = "it is not guided there, or the point failed or was excluded (points.parquet says which)"
+
 func (e *AbsentError) Error() string {
 	if e.Between {
-		return fmt.Sprintf("surface: family %s is not guided at the neighbouring grid point %s: the point is at or beyond its cut-off", e.Family, e.At)
+		return fmt.Sprintf("surface: family %s has no value at the neighbouring grid point %s: "+absence, e.Family, e.At)
 	}
-	return fmt.Sprintf("surface: family %s is not guided at %s", e.Family, e.At)
+	return fmt.Sprintf("surface: family %s has no value at %s: "+absence, e.Family, e.At)
 }

@@ -153,6 +153,7 @@ func (x *tensor) close() {
 			x.noise[f] = 0
 		}
 	}
+	copy(x.floor, x.noise)
 }
 
 // grow widens the window from the cell, a node at a time and lane by lane, as long as

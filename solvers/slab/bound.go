@@ -13,8 +13,12 @@ const ulp = 0x1p-53
 // added a few, of the largest size.
 const safety = 24
 
+// given is the relative error of a permittivity and its derivatives as they come
+// in: evaluating a material takes a few operations. A thickness has that of one rounding.
+const given = 4 * ulp
+
 // bound writes bounds on the numerical error. The only errors are those of
-// rounding. A relative error in a layer's phase moves N by the layer's share of
+// rounding, of the stack's own numbers too. A relative error in a layer's phase moves N by the layer's share of
 // the energy, an error in a face's state by |psi phi| there, which gives the error
 // of u. The k-th Taylor coefficient of u carries that error times the k-th
 // power of the rate at which the phases and the field's distribution change, and the rest is propagated through
@@ -31,6 +35,10 @@ func bound[T scalar](o *output, q *line[T], norm linear[T], n series[T], m *solv
 		du[k] = du[k-1] * rate
 	}
 	size, grow, de := sizes(n), sizes(inverse(n)), q.spread(&du)
+	in := q.inputs(norm, n, rate)
+	for k := range de {
+		de[k] += in[k]
+	}
 	for k := range dn {
 		dn[k] = 2 * ulp * size[k]
 		for j := range k + 1 {
@@ -68,6 +76,46 @@ func (q *line[T]) spread(du *[4]float64) (e [4]float64) {
 			v += u[j] * (2*du[k-j] + 2*ulp*u[k-j])
 		}
 		e[k] = v * most
+	}
+	return e
+}
+
+// inputs is what rounding of the stack's numbers does to N, over safety: every number
+// counts with its derivative of N along the way, which is known to first order and taken to
+// go on as the rate says, or as u itself does where that changes faster.
+func (q *line[T]) inputs(norm linear[T], n series[T], rate float64) (e [4]float64) {
+	over, n2, u := norm.over(), mul(n, n).first(), sizes(q.u)
+	base := u[1] + rate*u[0]
+	rate = max(rate, 2*u[2]/base, math.Sqrt(6*u[3]/base))
+	put := func(a, b complex128, of [4]float64, by float64) {
+		s := [4]float64{abs(a), abs(b)}
+		s[2] = rate * max(s[1], rate*s[0])
+		s[3] = rate * s[2]
+		for k := range e {
+			for j := range k + 1 {
+				e[k] += 2 * by / safety * s[j] * of[k-j]
+			}
+		}
+	}
+	medium := func(c *coefs[T], s share[T]) share[T] {
+		s.scale(over)
+		g := sensitive(q, c, &s, n2)
+		put(g[0][0], g[0][1], sizes(c.e), given)
+		if q.tm {
+			put(g[1][0], g[1][1], sizes(c.inv), given)
+		}
+		return s
+	}
+	for i := range q.films {
+		f := &q.films[i]
+		s := medium(&f.live, q.shares[i])
+		g := w2(s.energy, f.d)
+		put(g[0], g[1], [4]float64{1}, ulp)
+	}
+	for i := range q.ends {
+		if q.ends[i].closure == open {
+			medium(&q.ends[i].live, q.tails[i])
+		}
 	}
 	return e
 }

@@ -15,11 +15,12 @@ type search struct {
 	at    int // the interface of the mismatch
 	known []complex128
 	found []complex128
-	work  int // evaluations left
+	work  int     // evaluations left
+	pace  float64 // the largest step round a contour, over the distance its rates see
 }
 
 // budget bounds the evaluations spent on one line.
-const budget = 60_000
+const budget = 120_000
 
 var (
 	errContour = errors.New("the argument of the mismatch cannot be followed round the region of guided modes")
@@ -71,7 +72,8 @@ func (c *search) turns(r *region) (int, error) {
 }
 
 // turn follows the argument from a to b, halving the way until it turns
-// slowly, and as its rates at both ends say.
+// slowly, and as its rates at both ends say. A zero beside a long way can hide
+// behind rates that cancel at its ends, so both halves have to agree with it too.
 func (c *search) turn(r *region, a, b *spot, depth int) (float64, error) {
 	if cmplx.IsNaN(a.rate) || cmplx.IsNaN(b.rate) || depth > 48 {
 		return 0, errContour
@@ -79,14 +81,14 @@ func (c *search) turn(r *region, a, b *spot, depth int) (float64, error) {
 	if c.work < 0 {
 		return 0, errBudget
 	}
-	du := b.u - a.u
-	if abs(du)*max(abs(a.rate), abs(b.rate)) < 1 {
-		t := cmplx.Phase(b.f * cmplx.Conj(a.f))
-		if math.Abs(t-imag(du*(a.rate+b.rate))/2) < 0.25 {
-			return t, nil
+	m := c.spot(r, (a.s+b.s)/2)
+	if _, calm := a.to(b, c.pace); calm {
+		x, first := a.to(&m, c.pace)
+		y, second := m.to(b, c.pace)
+		if first && second {
+			return x + y, nil
 		}
 	}
-	m := c.spot(r, (a.s+b.s)/2)
 	x, err := c.turn(r, a, &m, depth+1)
 	if err != nil {
 		return 0, err
@@ -95,9 +97,35 @@ func (c *search) turn(r *region, a, b *spot, depth int) (float64, error) {
 	return x + y, err
 }
 
+// to is how far the argument turns from one spot to the next, and whether the
+// rates bear that out.
+func (a *spot) to(b *spot, pace float64) (turn float64, calm bool) {
+	du := b.u - a.u
+	if !(abs(du)*max(abs(a.rate), abs(b.rate)) < pace) {
+		return 0, false
+	}
+	turn = cmplx.Phase(b.f * cmplx.Conj(a.f))
+	return turn, math.Abs(turn-imag(du*(a.rate+b.rate))/2) < pace/4
+}
+
+// paces are the steps that are tried: where counts contradict each other one
+// of them took a zero close by for none, which smaller steps do not.
+var paces = [...]float64{1, 0.25, 0.0625}
+
 // all finds every zero in a region. known are zeros found by other means.
-func (c *search) all(ctx context.Context, r region) error {
-	c.work = budget
+func (c *search) all(ctx context.Context, r region) (err error) {
+	at := c.at
+	for _, c.pace = range paces {
+		c.work, c.found, c.at = budget, c.found[:0], at
+		if err = c.sweep(ctx, r); !errors.Is(err, errContour) {
+			return err
+		}
+	}
+	return err
+}
+
+// sweep is all with one pace. Where a zero lies on the contour that is moved.
+func (c *search) sweep(ctx context.Context, r region) error {
 	n, err := c.turns(&r)
 	for nudge := 1e-12; err == errContour && nudge < 1e-7; nudge *= 30 {
 		r.lo += complex(nudge*(1+r.cut), -nudge)
@@ -110,14 +138,20 @@ func (c *search) all(ctx context.Context, r region) error {
 }
 
 // divide finds the n zeros of a region, splitting it as long as the known
-// ones and a Newton iteration do not account for them.
+// ones and a Newton iteration do not account for them. Both parts are counted: that they
+// add up is part of the proof. The sides meet where the modes of the region are
+// strongest: elsewhere rounding would smear the zeros of a mode behind an opaque film.
 func (c *search) divide(ctx context.Context, r region, n, depth int) error {
-	if n <= 0 {
+	if n < 0 {
+		return errContour
+	}
+	if n == 0 {
 		return nil
 	}
 	if err := ctx.Err(); err != nil {
 		return err
 	}
+	c.at = c.line.meet(c.line.unknown(r.n2((r.lo + r.hi) / 2)))
 	if c.settle(&r, n) {
 		return nil
 	}
@@ -126,8 +160,8 @@ func (c *search) divide(ctx context.Context, r region, n, depth int) error {
 	}
 	for _, at := range [...]float64{0.5, 0.4375, 0.5625, 0.39, 0.61} {
 		a, b := r.split(at)
-		k, err := c.turns(&a)
-		if err == errContour || err == nil && (k < 0 || k > n) {
+		k, err := c.both(&a, &b, n)
+		if err == errContour {
 			continue
 		}
 		if err != nil {
@@ -139,6 +173,19 @@ func (c *search) divide(ctx context.Context, r region, n, depth int) error {
 		return c.divide(ctx, b, n-k, depth+1)
 	}
 	return errContour
+}
+
+// both counts the zeros in one of two parts that hold n.
+func (c *search) both(a, b *region, n int) (int, error) {
+	k, err := c.turns(a)
+	if err != nil {
+		return 0, err
+	}
+	l, err := c.turns(b)
+	if err == nil && (k < 0 || l < 0 || k+l != n) {
+		err = errContour
+	}
+	return k, err
 }
 
 func (r *region) split(at float64) (a, b region) {
@@ -178,10 +225,12 @@ func (c *search) settle(r *region, n int) bool {
 	return false
 }
 
-// newton refines N to a zero.
+// newton refines N to a zero: until steps are below rounding or, where another
+// zero close by makes rounding count for more, no longer shrink.
 func (c *search) newton(n2 complex128) (complex128, bool) {
 	q := c.line
 	u := q.unknown(n2)
+	last := math.Inf(1)
 	for range 30 {
 		c.work--
 		q.look(u, c.at)
@@ -191,9 +240,11 @@ func (c *search) newton(n2 complex128) (complex128, bool) {
 			return 0, false
 		}
 		u -= du
-		if abs(du) < 1e-13*abs(u) {
+		size := abs(du) / abs(u)
+		if size < 1e-13 || size < 1e-8 && size > last/2 {
 			return q.place(u), real(u) > 0
 		}
+		last = size
 	}
 	return 0, false
 }

@@ -56,7 +56,8 @@
 //
 // # Accuracy
 //
-// Only rounding. Measured against characteristic equations solved with 420 bits, the largest error over
+// Only rounding. Counts hold where both parts of every region split on the way add up to the whole, and
+// are taken again in smaller steps where they do not. Measured against characteristic equations solved with 420 bits, the largest error over
 // the tests' stacks (neff and sensitivities relative, GVD relative to max(|value|, 1 ps^2/km), beta3 likewise):
 //
 //	stacks                            neff     ng       GVD      beta3    error/bound
@@ -64,7 +65,8 @@
 //	neff 1e-6 above cut-off           1e-16    5e-15    2e-14    4e-13    0.02
 //	neff 1e-9 above cut-off           1e-16    4e-15    6e-12    1e-11    0.12
 //
-// The bounds follow the rounding of every layer and face through the Taylor coefficients. Between two grounds a mode near
+// The bounds follow the rounding of every layer and face through the Taylor coefficients, and that of the stack's own
+// numbers: 4 x 2^-53 of each permittivity and derivative, 2^-53 of each thickness. Between two grounds a mode near
 // cut-off is as badly conditioned as its closed form, and its bound says so. Two modes of a three-layer
 // slab with every column take about 5 us of one core, ten times that with loss; nothing is allocated once the work space has grown.
 //

@@ -24,6 +24,8 @@ func (q *line[T]) meet(u T) int {
 // polish ends the search with Newton steps on the mismatch at interface m. It
 // gives u, the mismatch's slope there and whether the steps went to nothing.
 func (q *line[T]) polish(u T, m int) (root, slope T, ok bool) {
+	q.sharp = len(q.films) > 1
+	defer func() { q.sharp = false }()
 	for range 6 {
 		q.look(u, m)
 		d := q.miss(m)
@@ -39,6 +41,24 @@ func (q *line[T]) polish(u T, m int) (root, slope T, ok bool) {
 		}
 	}
 	return u, slope, false
+}
+
+// faint is a u that the search, which sees it as the cosine of an angle, does not resolve well.
+const faint = 1e-10
+
+// touch polishes the u of a mode that hardly leaves the cut-off from there,
+// where the mismatch is analytic; it keeps u where that leads nowhere.
+func (q *line[T]) touch(u, slope T, m int) (T, T) {
+	q.look(0, m)
+	d := q.miss(m)
+	start := -d.a / d.b
+	if !(re(start) > 0) {
+		return u, slope
+	}
+	if v, s, ok := q.polish(start, m); ok {
+		return v, s
+	}
+	return u, slope
 }
 
 // expand finds how u moves with frequency, to third order: the mismatch

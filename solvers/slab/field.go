@@ -43,6 +43,9 @@ func shape[T scalar](o *output, q *line[T], n complex128, m *solvers.Mode) {
 	if q.mirror {
 		m.Weff *= 2
 	}
+	if !(m.Weff > 0) || math.IsInf(m.Weff, 0) { // beyond the range of numbers
+		m.Weff = math.NaN()
+	}
 }
 
 // sampled is how much of the films' extent a signature shows beyond each

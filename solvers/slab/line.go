@@ -76,6 +76,7 @@ type line[T scalar] struct {
 	origin float64  // extent of the films below the first
 	evened bool     // divide states by their larger part
 	steady bool     // scale films by constants that are positive
+	sharp  bool     // carry through opaque films as two waves, scaled as that moves
 	still  bool     // nothing but u moves
 	states [2][]state[T]
 	rays   [2][]ray[T]

@@ -71,7 +71,11 @@ func (q *line[T]) pass(i int, in ray[T], v linear[T]) ray[T] {
 	}
 	q.z[i] = z
 	var cos, sinc linear[T]
-	if !q.steady && evanescent(z.a) {
+	wall := !q.steady && evanescent(z.a)
+	if wall && q.sharp {
+		return leak(in, z, linear[T]{a: c.inv.a * f.h})
+	}
+	if wall {
 		cos, sinc = fading(z)
 	} else {
 		t := q.trig(i, z.a)
@@ -88,6 +92,26 @@ func (q *line[T]) pass(i int, in ray[T], v linear[T]) ray[T] {
 	}
 	k := num[T](1 / size)
 	return ray[T]{out.psi.by(k), out.phi.by(k)}
+}
+
+// leak carries a ray through a film of several decay lengths as tunnel does, to
+// first order: near the resonance of a film beyond no digits are lost. admit is h/p.
+func leak[T scalar](in ray[T], z, admit linear[T]) ray[T] {
+	x := linear[T]{a: sqrt(-z.a)}
+	x.b = -0.5 * z.b / x.a
+	over := admit.times(x.over())
+	y := over.times(in.phi)
+	e := exp(-2 * x.a)
+	grow, fall := in.psi.plus(y), in.psi.less(y).times(linear[T]{e, -2 * e * x.b})
+	sign := T(1)
+	if modulus(fall.a) > modulus(grow.a) {
+		grow, fall, sign = fall, grow, -1
+	}
+	r := fall.times(grow.over())
+	psi, phi := r, r.by(-1)
+	psi.a += 1
+	phi.a += 1
+	return ray[T]{psi, phi.times(over.over()).by(sign)}
 }
 
 // fading is waves to first order, without the factor.

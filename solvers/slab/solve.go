@@ -115,7 +115,10 @@ func finish[T scalar](s *Solver, q *line[T], p *pick, m *solvers.Mode) {
 	} else {
 		var slope T
 		q.meets = q.meet(u)
-		u, slope, _ = q.polish(u, q.meets)
+		var ok bool
+		if u, slope, ok = q.polish(u, q.meets); !ok && q.branch && modulus(u) < faint {
+			u, slope = q.touch(u, slope, q.meets)
+		}
 		q.expand(u, slope, q.meets)
 	}
 	norm := q.gather(q.meets, q.shares[:len(q.films)], &q.tails)

@@ -135,7 +135,7 @@ func (s *Solver) separate(q *line[float64], g *gauge, p *pick, number int) {
 // a different group index: how the two mix is not known, nor how sharply they
 // avoid each other.
 func unsure(p *pick, m *solvers.Mode) {
-	if p.spread <= 1e3*m.NgErr {
+	if !(p.spread > 1e3*m.NgErr) { // nor where that is not known
 		return
 	}
 	m.NgErr += p.spread

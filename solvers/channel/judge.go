@@ -1,0 +1,94 @@
+package channel
+
+// judge says whether all wanted modes are there, or where to look for the next.
+func (fd *finder[T]) judge(round int) (shift float64, done bool, err error) {
+	if !fd.counted {
+		enough := fd.want > 0 && len(fd.found) >= fd.want
+		return fd.high, enough || round >= 2, nil
+	}
+	if len(fd.found) == fd.total {
+		return 0, true, nil
+	}
+	m := min(fd.want, len(fd.found))
+	bad, err := fd.gap(m)
+	if err != nil {
+		return 0, false, err
+	}
+	if bad < 0 {
+		if m == fd.want {
+			return 0, true, nil
+		}
+		low := fd.low
+		if m == 0 {
+			return fd.high, false, nil
+		}
+		top := fd.value(m - 1)
+		return top - min(1e-3*top, 0.1*(top-low)), false, nil
+	}
+	return fd.below(bad), false, nil
+}
+
+// value is the Re N of found mode i.
+func (fd *finder[T]) value(i int) float64 { return realPart(fd.found[i].n) }
+
+// below gives an N just below found mode i and above the next that is not its twin.
+func (fd *finder[T]) below(i int) float64 {
+	v := fd.value(i)
+	for j := i + 1; j < len(fd.found) && v-fd.value(j) < 1e-7*v; j++ {
+		v = fd.value(j)
+	}
+	next := fd.low
+	for j := i + 1; j < len(fd.found); j++ {
+		if w := fd.value(j); w < v {
+			next = max(next, w)
+			break
+		}
+	}
+	return v - min(1e-4*v, (v-next)/2)
+}
+
+// gap finds the first of the m highest modes below which more modes are counted than found; -1: none.
+func (fd *finder[T]) gap(m int) (int, error) {
+	if m == 0 {
+		return -1, nil
+	}
+	missing, err := fd.missingBelow(m - 1)
+	if err != nil || !missing {
+		return -1, err
+	}
+	lo, hi := 0, m-1
+	for lo < hi {
+		mid := (lo + hi) / 2
+		missing, err := fd.missingBelow(mid)
+		if err != nil {
+			return 0, err
+		}
+		if missing {
+			hi = mid
+		} else {
+			lo = mid + 1
+		}
+	}
+	return lo, nil
+}
+
+// missingBelow compares the count with the modes found down to mode i and its twins.
+func (fd *finder[T]) missingBelow(i int) (bool, error) {
+	at := fd.below(i)
+	for _, pr := range fd.proven {
+		if pr.at <= fd.value(i) && pr.at >= at {
+			return pr.above > fd.foundAbove(pr.at), nil
+		}
+	}
+	pr, err := fd.factor(fromReal[T](at))
+	return pr.above > fd.foundAbove(pr.at), err
+}
+
+func (fd *finder[T]) foundAbove(at float64) (n int) {
+	for i := range fd.found {
+		if fd.value(i) > at {
+			n++
+		}
+	}
+	return n
+}

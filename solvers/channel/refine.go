@@ -1,0 +1,127 @@
+package channel
+
+import (
+	"math"
+
+	"betaloom/solvers/internal/ldl"
+)
+
+// Refining: modes close to each other share one shift just below them, inverse
+// iteration on all their vectors together, and the pencil projected on these.
+const (
+	near    = 2e-3  // relative distance in N within which modes share a shift
+	offset  = 3e-4  // of the shift below the lowest of them
+	precise = 1e-11 // residual at which to stop
+	stale   = 1e-9  // residual at which slow progress is taken for rounding
+	twin    = 1e-6  // relative distance in N of modes that are parted together
+	rounds  = 12
+)
+
+// convert takes the neighbours' vectors; there are none where they are not independent.
+func (fd *finder[T]) convert(x [][]complex128) (v [][]T) {
+	for _, c := range x {
+		r := make([]T, len(c))
+		for i, e := range c {
+			r[i] = fromComplex[T](e)
+		}
+		if n := norm(r); n > 0 && !math.IsInf(n, 0) {
+			v = append(v, r)
+		}
+	}
+	return v
+}
+
+// refine turns rough vectors into modes.
+func (fd *finder[T]) refine(v [][]T) error {
+	if len(v) == 0 {
+		return nil
+	}
+	list, err := fd.project(v)
+	if err != nil {
+		return err
+	}
+	for len(list) > 0 {
+		n := 1
+		for n < len(list) && ldl.Abs1(list[n-1].n-list[n].n) < near*ldl.Abs1(list[n].n) {
+			n++
+		}
+		if err := fd.polish(list[:n]); err != nil {
+			return err
+		}
+		list = list[n:]
+	}
+	return nil
+}
+
+// polish iterates on a cluster. Where that is slow, because the first projection had N wrong, the shift moves.
+func (fd *finder[T]) polish(list []pair[T]) error {
+	if err := fd.under(list); err != nil || !(realPart(list[0].n) > 0) {
+		return err
+	}
+	before := math.Inf(1)
+	for range rounds {
+		v := make([][]T, len(list))
+		for i, m := range list {
+			v[i] = append([]T{}, m.bx...)
+			fd.f.solve(v[i])
+		}
+		next, err := fd.project(v)
+		if err != nil || len(next) == 0 {
+			break
+		}
+		list = next
+		worst := 0.0
+		for _, m := range list {
+			worst = max(worst, m.residual)
+		}
+		if worst < precise || worst < stale && worst > 0.3*before {
+			break
+		}
+		if worst > 0.1*before {
+			if err := fd.under(list); err != nil {
+				return err
+			}
+		}
+		before = worst
+	}
+	for _, m := range list {
+		fd.accept(m)
+	}
+	return nil
+}
+
+// under factors just below the lowest of a cluster.
+func (fd *finder[T]) under(list []pair[T]) error {
+	low := list[len(list)-1].n
+	if !(realPart(low) > 0) {
+		return nil
+	}
+	_, err := fd.factor(low * fromReal[T](1-offset))
+	return err
+}
+
+// part projects the pencil once more on modes that agree to twin and may have been found one by one: each could be
+// a mixture of them.
+func (fd *finder[T]) part() error {
+	for i := 0; i < len(fd.found); {
+		n := 1
+		for i+n < len(fd.found) && ldl.Abs1(fd.found[i+n].n-fd.found[i+n-1].n) < twin*ldl.Abs1(fd.found[i].n) {
+			n++
+		}
+		if n > 1 {
+			v := make([][]T, n)
+			for j := range v {
+				v[j] = fd.found[i+j].x
+			}
+			list, err := fd.project(v)
+			if err != nil {
+				return err
+			}
+			if len(list) == n {
+				copy(fd.found[i:], list)
+			}
+		}
+		i += n
+	}
+	return nil
+}
