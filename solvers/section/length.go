@@ -76,11 +76,7 @@ func (a Length) shifted(d float64) Length { return Length{V: a.V + d, P: a.P} }
 // mean is (a + b)/2.
 func mean(a, b Length) Length { return join(a.V+(b.V-a.V)/2, 0.5, a, 0.5, b) }
 
-// between is a at t = 0 and b at t = 1, exactly so in value.
-func between(a, b Length, t float64) Length {
-	return join(lerp(a.V, b.V, t), 1-t, a, t, b)
-}
-
+// lerp is a at t = 0 and b at t = 1, exactly so.
 func lerp(a, b, t float64) float64 {
 	if t > 0.5 {
 		return b - (1-t)*(b-a)
