@@ -159,10 +159,11 @@ func solved(v *View, axes []schema.AxisBlock) func(point int) answer {
 		}
 		a := answer{state: "solved"}
 		for m, name := range []string{"TE0", "TM0"} {
-			neff, ng, gvd := smooth(m, at)
-			if math.IsNaN(neff) {
+			_, _, gvd := smooth(m, at)
+			if math.IsNaN(gvd) {
 				continue
 			}
+			neff, ng := indices(m, at)
 			a.guided++
 			a.modes = append(a.modes, row{name, name[:2], "", map[string]float64{"neff": neff, "ng": ng, "gvd_ps2_per_km": gvd, "beta3_ps3_per_km": slope(m, at),
 				"neff_err": 3e-12, "ng_err": 1e-10, "gvd_err_ps2_per_km": 2e-4, "beta3_err_ps3_per_km": 1e-3}})
@@ -172,6 +173,32 @@ func solved(v *View, axes []schema.AxisBlock) func(point int) answer {
 		}
 		return a
 	}
+}
+
+// indices are the neff and ng that smooth's dispersion belongs to, so that
+// the surface finds them each other's derivatives:
+// b(w) = b(w0) + b1(w0) (w-w0) + integral of (w-s) b2(s) ds, from w0 at 1.3 um and by
+// Simpson's rule on 64 intervals, which leaves less than the bounds stated.
+func indices(mode int, at map[string]float64) (neff, ng float64) {
+	const c, n = schema.LightSpeed, 64
+	w0, w := 2*math.Pi*c/1.3e-6, 2*math.Pi*c/at["wavelength"]
+	h := (w - w0) / n
+	var first, second float64
+	for i := range n + 1 {
+		weight := h / 3 * float64(2+2*(i%2))
+		if i == 0 || i == n {
+			weight = h / 3
+		}
+		s := w0 + h*float64(i)
+		shifted := maps.Clone(at)
+		shifted["wavelength"] = 2 * math.Pi * c / s
+		_, _, gvd := smooth(mode, shifted)
+		first += weight * gvd * 1e-27 // s^2/m
+		second += weight * gvd * 1e-27 * (w - s)
+	}
+	const ng0 = 2.0
+	neff0 := 1.9 - 0.1*float64(mode)
+	return (neff0*w0/c + ng0/c*(w-w0) + second) * c / w, ng0 + first*c
 }
 
 // slope is the derivative of smooth's dispersion by the angular frequency, in
