@@ -56,4 +56,6 @@ type Mode struct {
 	Reduced   bool        // from a reduced basis rather than a full solve
 	Flags     []string    // near-cutoff, below-cutoff, approximate, ...
 	Signature [16]float32 // field samples in section coordinates, unit norm, sign fixed
+
+	State any // what the solver that made the mode starts from at a neighbouring point; nil where it starts from nothing
 }

@@ -10,9 +10,22 @@ import (
 // convert appends the rows of modes to rows. They share the modes' memory.
 func convert(rows []part.Mode, modes []solvers.Mode) []part.Mode {
 	for i := range modes {
-		rows = append(rows, part.Mode(modes[i]))
+		rows = append(rows, row(&modes[i]))
 	}
 	return rows
+}
+
+// row is a mode without the state that its solver starts from.
+func row(m *solvers.Mode) part.Mode {
+	return part.Mode{
+		Family: m.Family, Type: m.Type, Symmetry: m.Symmetry,
+		Neff: m.Neff, Kappa: m.Kappa, Ng: m.Ng, GVD: m.GVD, Beta3: m.Beta3,
+		NeffErr: m.NeffErr, KappaErr: m.KappaErr, NgErr: m.NgErr, GVDErr: m.GVDErr, Beta3Err: m.Beta3Err,
+		DNeff: m.DNeff, DNg: m.DNg,
+		ExShare: m.ExShare, Aeff: m.Aeff, Weff: m.Weff, Confinement: m.Confinement,
+		Z: m.Z, ZDefinition: m.ZDefinition, Cutoff: m.Cutoff, CPerM: m.CPerM, LPerM: m.LPerM,
+		Reduced: m.Reduced, Flags: m.Flags, Signature: m.Signature,
+	}
 }
 
 // memory keeps the modes of a point after the solver has gone on to the

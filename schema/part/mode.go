@@ -23,9 +23,8 @@ type Point struct {
 	Reason      string
 }
 
-// Mode is one guided mode at one point. It has the fields of solvers.Mode in
-// its order, so that one converts to the other; a float that has no meaning
-// is NaN and becomes null.
+// Mode is one guided mode at one point, with the fields of solvers.Mode but its
+// state; a float that has no meaning is NaN and becomes null.
 type Mode struct {
 	Family   string // exact where the solver knows it, empty where it must be followed
 	Type     string // TE, TM, TEM, ...

@@ -10,6 +10,7 @@ import (
 
 	"gonum.org/v1/gonum/mat"
 
+	"betaloom/schema"
 	"betaloom/solvers"
 	"betaloom/solvers/section"
 )
@@ -213,7 +214,7 @@ func TestRefusals(t *testing.T) {
 	}
 	try := func(name string, m *section.Mesh, k float64, eps [][3]complex128) {
 		t.Run(name, func(t *testing.T) {
-			_, err := top.Assemble(m, k, eps)
+			_, err := top.Assemble(m, k*schema.LightSpeed, media(eps...))
 			wantInput(t, err)
 		})
 	}

@@ -5,7 +5,9 @@ import (
 	"math"
 	"testing"
 
+	"betaloom/schema"
 	"betaloom/solvers"
+	"betaloom/solvers/jet"
 	"betaloom/solvers/section"
 )
 
@@ -45,6 +47,15 @@ func walls(m *section.Mesh, left, right, bottom, top section.Wall) *section.Mesh
 	return m
 }
 
+// media are media of constant permittivities.
+func media(eps ...[3]complex128) []section.Medium {
+	out := make([]section.Medium, len(eps))
+	for i, e := range eps {
+		out[i].Eps = [3]jet.Jet{jet.Const(e[0]), jet.Const(e[1]), jet.Const(e[2])}
+	}
+	return out
+}
+
 func always(p int) func(float64) int       { return func(float64) int { return p } }
 func everywhere(float64, float64) int      { return 0 }
 func isotropic(e complex128) [3]complex128 { return [3]complex128{e, e, e} }
@@ -55,7 +66,7 @@ func pencil(t testing.TB, m *section.Mesh, k float64, eps ...[3]complex128) *Pen
 	if err != nil {
 		t.Fatal(err)
 	}
-	p, err := top.Assemble(m, k, eps)
+	p, err := top.Assemble(m, k*schema.LightSpeed, media(eps...))
 	if err != nil {
 		t.Fatal(err)
 	}

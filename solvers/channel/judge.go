@@ -76,8 +76,11 @@ func (fd *finder[T]) gap(m int) (int, error) {
 func (fd *finder[T]) missingBelow(i int) (bool, error) {
 	at := fd.below(i)
 	for _, pr := range fd.proven {
-		if pr.at <= fd.value(i) && pr.at >= at {
-			return pr.above > fd.foundAbove(pr.at), nil
+		if pr.at > fd.value(i) {
+			continue
+		}
+		if missing := pr.above > fd.foundAbove(pr.at); !missing || pr.at >= at {
+			return missing, nil // none above a lower place: none here
 		}
 	}
 	pr, err := fd.factor(fromReal[T](at))

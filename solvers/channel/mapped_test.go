@@ -5,6 +5,7 @@ import (
 	"math/cmplx"
 	"testing"
 
+	"betaloom/schema"
 	"betaloom/solvers/section"
 )
 
@@ -172,7 +173,7 @@ func TestStraightAndBentInTurn(t *testing.T) {
 	want := p.all(2)
 	var near [][]complex128
 	for round, m := range []*section.Mesh{straight, bent, straight, bent} {
-		pc, err := top.Assemble(m, p.k, [][3]complex128{isotropic(p.eps), isotropic(1)})
+		pc, err := top.Assemble(m, p.k*schema.LightSpeed, media(isotropic(p.eps), isotropic(1)))
 		if err != nil {
 			t.Fatal(err)
 		}

@@ -17,11 +17,19 @@ type Options struct {
 	Want int            // how many, from the highest Re L down; 0: all above Low
 	Low  float64        // effective index above which a mode is wanted, > 0
 	Near [][]complex128 // vectors of a neighbouring pencil of the same topology to start from, one a mode; may be nil
+
+	// Expect is how many modes are known to be above Low, 0 where they are to be counted. The wanted ones are proven to be
+	// the highest all the same; the count is then Expect, without a proof of its own.
+	Expect int
+
+	Slopes bool // give the vectors' derivatives too, for Differentiate
 }
 
 // Validate says what is wrong with the options.
 func (o *Options) Validate() error {
 	switch {
+	case o.Expect < 0 || o.Expect > 0 && (o.Want == 0 || o.Want > o.Expect):
+		return &solvers.InputError{Where: "modes", Found: fmt.Sprintf("%d wanted of %d expected", o.Want, o.Expect), Expected: "at least one, and no more than are expected"}
 	case o.Want < 0:
 		return &solvers.InputError{Where: "modes", Found: fmt.Sprintf("%d wanted", o.Want), Expected: "0 or more"}
 	case !(o.Low > 0) || math.IsInf(o.Low, 0):
@@ -30,11 +38,12 @@ func (o *Options) Validate() error {
 	return nil
 }
 
-// Pair is a mode: L = beta^2 in 1/m^2 and its vector with x'Bx = 1 (never conjugated), the largest entry
-// having a positive real part. Residual is |F x| / |L B x| in the norm that does not depend on the functions' scale.
+// Pair is a mode: L = beta^2 in 1/m^2 and its vector with x'Bx = 1 (never conjugated; -1 for a backward wave without
+// loss), the largest entry having a positive real part. X1 is the vector's derivative in the angular frequency with x'B x1 = 0,
+// nil unless it was asked for. Residual is |F x| / |L B x| in the norm that does not depend on the functions' scale.
 type Pair struct {
 	L        complex128
-	X        []complex128
+	X, X1    []complex128
 	Residual float64
 }
 
@@ -70,6 +79,7 @@ func (p *Pencil) Modes(ctx context.Context, o Options) ([]Pair, solvers.Count, e
 type pair[T ldl.Number] struct {
 	n        T // L/k^2
 	x, bx    []T
+	x1       []T // derivative of x in w
 	residual float64
 }
 
@@ -78,6 +88,8 @@ type finder[T ldl.Number] struct {
 	ctx     context.Context
 	s       *system[T]
 	f       *factor[T]
+	at      float64 // where f stands
+	ready   bool    // f is filled
 	low     float64 // N above which a mode counts
 	high    float64 // no mode above
 	counted bool    // inertia counts modes
@@ -102,7 +114,7 @@ func modesOf[T ldl.Number](ctx context.Context, p *Pencil, s *system[T], kit *ki
 	if fd.high <= fd.low {
 		fd.high = fd.low * (1 + 1e-9)
 	}
-	if p.positive {
+	if p.positive && o.Expect == 0 {
 		n, err := p.above(ctx, fd.low)
 		if err != nil {
 			return nil, solvers.Count{}, err
@@ -113,11 +125,33 @@ func modesOf[T ldl.Number](ctx context.Context, p *Pencil, s *system[T], kit *ki
 		}
 	}
 	err := fd.run(o.Near)
+	if err == nil && o.Slopes {
+		err = fd.slopes(p, kit)
+	}
 	pairs := fd.pairs(p.k)
 	if err != nil {
 		return pairs, solvers.Count{}, err
 	}
+	if o.Expect > 0 {
+		return pairs, solvers.Count{N: o.Expect}, nil
+	}
 	return pairs, fd.count(o.Low), nil
+}
+
+// Count gives the number of modes above an effective index, as Modes counts them, without finding any. It is -1 where
+// a permittivity is not positive.
+func (p *Pencil) Count(ctx context.Context, low float64) (int, error) {
+	if !(low > 0) || math.IsInf(low, 0) {
+		return 0, &solvers.InputError{Where: "count", Found: fmt.Sprintf("a lowest effective index of %g", low), Expected: "above 0"}
+	}
+	if !p.positive {
+		return -1, nil
+	}
+	n, err := p.above(ctx, low*low)
+	if err != nil && ctx.Err() == nil {
+		err = &solvers.ConvergenceError{Where: "count", Err: err}
+	}
+	return n, err
 }
 
 // above counts the modes of the real parts above N = low.
@@ -163,6 +197,7 @@ func (fd *finder[T]) factor(at T) (proof, error) {
 	for try := range 6 {
 		shift := at * fromReal[T](1-float64(try*try)*nudge)
 		err = fd.f.fill(fd.s, shift)
+		fd.at, fd.ready = realPart(shift), err == nil
 		if err == nil && (fd.f.growth < steep || try == 5) {
 			pr := proof{at: realPart(shift), above: fd.f.negative - fd.s.t.potentials}
 			if fd.counted {
@@ -227,11 +262,17 @@ func (fd *finder[T]) pairs(k float64) []Pair {
 		for j, v := range m.x {
 			out[i].X[j] = toComplex(v) * scale
 		}
+		if m.x1 != nil {
+			out[i].X1 = make([]complex128, len(m.x1))
+			for j, v := range m.x1 {
+				out[i].X1[j] = toComplex(v) * scale
+			}
+		}
 	}
 	return out
 }
 
-// norm1 is the factor that makes x'Bx = 1 and the largest entry's real part positive.
+// norm1 is the factor that makes x'Bx = 1 (or -1, where x is real) and the largest entry's real part positive.
 func norm1[T ldl.Number](x, bx []T) complex128 {
 	var top complex128
 	var sum T
@@ -242,6 +283,9 @@ func norm1[T ldl.Number](x, bx []T) complex128 {
 		}
 	}
 	scale := 1 / cmplx.Sqrt(toComplex(sum))
+	if _, ok := any(sum).(float64); ok {
+		scale = complex(cmplx.Abs(scale), 0)
+	}
 	if real(top*scale) < 0 {
 		scale = -scale
 	}

@@ -7,6 +7,7 @@ import (
 	"math/rand/v2"
 	"testing"
 
+	"betaloom/schema"
 	"betaloom/solvers"
 	"betaloom/solvers/section"
 )
@@ -53,7 +54,7 @@ func TestRandomSections(t *testing.T) {
 			wantInput(t, err) // metal only
 			continue
 		}
-		p, err := top.Assemble(m, 2*math.Pi/1.55e-6, eps)
+		p, err := top.Assemble(m, 2*math.Pi/1.55e-6*schema.LightSpeed, media(eps...))
 		if err != nil {
 			t.Fatal(n, err)
 		}
@@ -91,7 +92,7 @@ func FuzzSection(f *testing.F) {
 			wantInput(t, err)
 			return
 		}
-		p, err := top.Assemble(m, 2*math.Pi/1.55e-6, [][3]complex128{isotropic(complex(a, ai)), isotropic(complex(b, bi)), {complex(c, ci), complex(a, ci), complex(b, ai)}})
+		p, err := top.Assemble(m, 2*math.Pi/1.55e-6*schema.LightSpeed, media(isotropic(complex(a, ai)), isotropic(complex(b, bi)), [3]complex128{complex(c, ci), complex(a, ci), complex(b, ai)}))
 		if err != nil {
 			wantInput(t, err)
 			return

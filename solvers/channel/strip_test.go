@@ -10,6 +10,7 @@ import (
 	"strings"
 	"testing"
 
+	"betaloom/schema"
 	"betaloom/solvers/section"
 )
 
@@ -130,7 +131,7 @@ func TestWarmStart(t *testing.T) {
 		t.Fatal(err)
 	}
 	ask := func(k float64, near [][]complex128) Pair {
-		p, err := top.Assemble(m, k, stripEps)
+		p, err := top.Assemble(m, k*schema.LightSpeed, media(stripEps...))
 		if err != nil {
 			t.Fatal(err)
 		}
@@ -179,7 +180,7 @@ func BenchmarkStrip(b *testing.B) {
 			b.Fatal(err)
 		}
 		point := func(top *Topology, k float64, near [][]complex128) Pair {
-			p, err := top.Assemble(m, k, stripEps)
+			p, err := top.Assemble(m, k*schema.LightSpeed, media(stripEps...))
 			if err != nil {
 				b.Fatal(err)
 			}
@@ -208,7 +209,7 @@ func BenchmarkStrip(b *testing.B) {
 			return point(fresh, stripK, nil)
 		})
 		run("warm", func() Pair { return point(top, stripK, near) })
-		p, err := top.Assemble(m, stripK, stripEps)
+		p, err := top.Assemble(m, stripK*schema.LightSpeed, media(stripEps...))
 		if err != nil {
 			b.Fatal(err)
 		}

@@ -4,8 +4,10 @@ import (
 	"fmt"
 	"math"
 
+	"betaloom/schema"
 	"betaloom/solvers"
 	"betaloom/solvers/internal/ldl"
+	"betaloom/solvers/jet"
 	"betaloom/solvers/section"
 )
 
@@ -18,8 +20,9 @@ type Topology struct {
 	nodes      []node
 	skeleton   int // unknowns on the outlines of cells, numbered first
 	unknowns   int
-	potentials int // unknowns of e_z
-	media      int // number of media, at least
+	potentials int                 // unknowns of e_z
+	media      int                 // number of media, at least
+	tables     map[[2]int]*factors // one-dimensional functions by order and number of points
 	real       kit[float64]
 	cplx       kit[complex128]
 }
@@ -28,6 +31,16 @@ type Topology struct {
 type kit[T ldl.Number] struct {
 	shapes map[orders]*shape[T]
 	work   *factor[T]
+	eval   *evaluator[T]
+	fields [2]field[T]
+}
+
+// evaluator is the kit's, made when it is first needed.
+func (k *kit[T]) evaluator(t *Topology) *evaluator[T] {
+	if k.eval == nil {
+		k.eval = newEvaluator(t, k)
+	}
+	return k.eval
 }
 
 func newKit[T ldl.Number](cells []cell) (k kit[T]) {
@@ -55,7 +68,7 @@ func New(m *section.Mesh) (*Topology, error) {
 		return nil, err
 	}
 	g := newGrid(m)
-	t := &Topology{mesh: section.Mesh{Medium: g.medium, OrderX: g.ox, OrderY: g.oy, Left: m.Left, Right: m.Right, Bottom: m.Bottom, Top: m.Top}}
+	t := &Topology{tables: map[[2]int]*factors{}, mesh: section.Mesh{Medium: g.medium, OrderX: g.ox, OrderY: g.oy, Left: m.Left, Right: m.Right, Bottom: m.Bottom, Top: m.Top}}
 	index := t.collect(g)
 	if len(t.cells) == 0 {
 		return nil, &solvers.InputError{Where: "mesh", Found: "metal only", Expected: "a cell with a medium"}
@@ -181,6 +194,8 @@ type Pencil struct {
 	mesh     *section.Mesh
 	k        float64
 	eps      [][3]complex128
+	kappa    [][3]jet.Jet // k^2 eps
+	params   int
 	lossless bool // real permittivities
 	positive bool // with real parts above zero
 	top      float64
@@ -188,22 +203,24 @@ type Pencil struct {
 	cplx     *system[complex128]
 }
 
-// Assemble gives the pencil of a mesh of the topology's kind at the wave number k (rad/m in vacuum), with the relative
-// permittivities (x, y, z) of the media. Both are kept and must not be changed while the pencil is in use.
-func (t *Topology) Assemble(m *section.Mesh, k float64, eps [][3]complex128) (*Pencil, error) {
+// Assemble gives the pencil of a mesh of the topology's kind at the angular frequency w (rad/s), with the relative
+// permittivities (x, y, z) of the media. The mesh is kept and must not be changed while the pencil is in use.
+func (t *Topology) Assemble(m *section.Mesh, w float64, media []section.Medium) (*Pencil, error) {
 	if err := check(m); err != nil {
 		return nil, err
 	}
 	if !t.mesh.Same(m) {
 		return nil, &solvers.InputError{Where: "mesh", Found: "other cells, orders, media or walls", Expected: "those of its topology"}
 	}
+	k := w / schema.LightSpeed
 	if !(k > 0) || math.IsInf(k, 0) {
-		return nil, &solvers.InputError{Where: "wave number", Found: fmt.Sprint(k), Expected: "above 0"}
+		return nil, &solvers.InputError{Where: "angular frequency", Found: fmt.Sprint(w), Expected: "above 0"}
 	}
-	if len(eps) < t.media {
-		return nil, &solvers.InputError{Where: "media", Found: fmt.Sprintf("%d permittivities", len(eps)), Expected: fmt.Sprintf("at least %d", t.media)}
+	if len(media) < t.media {
+		return nil, &solvers.InputError{Where: "media", Found: fmt.Sprintf("%d permittivities", len(media)), Expected: fmt.Sprintf("at least %d", t.media)}
 	}
-	p := &Pencil{t: t, mesh: m, k: k, eps: eps, lossless: true, positive: true}
+	eps := permittivities(media)
+	p := &Pencil{t: t, mesh: m, k: k, eps: eps, kappa: squared(w, media), params: params(m, media), lossless: true, positive: true}
 	for _, c := range t.cells {
 		if err := p.look(c.medium); err != nil {
 			return nil, err
@@ -229,6 +246,27 @@ func (p *Pencil) look(medium int) error {
 		p.top = max(p.top, real(e))
 	}
 	return nil
+}
+
+func permittivities(media []section.Medium) [][3]complex128 {
+	eps := make([][3]complex128, len(media))
+	for i := range media {
+		for a := range eps[i] {
+			eps[i][a] = media[i].Eps[a].V
+		}
+	}
+	return eps
+}
+
+// params is the number of base parameters that a mesh or its media depend on.
+func params(m *section.Mesh, media []section.Medium) int {
+	n := len(m.DX)
+	for i := range media {
+		for _, j := range media[i].Eps {
+			n = max(n, len(j.P), len(j.WP))
+		}
+	}
+	return n
 }
 
 func realParts(eps [][3]complex128) [][3]float64 {

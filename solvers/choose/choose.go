@@ -3,6 +3,7 @@ package choose
 import (
 	"betaloom/schema"
 	"betaloom/solvers"
+	"betaloom/solvers/guide"
 )
 
 // New builds the problem of p with its equation, ready to be solved at any
@@ -13,12 +14,20 @@ func New(p *schema.Physics) (solvers.Problem, []string, error) {
 		return nil, nil, &solvers.InputError{Where: "section", Found: "none of layers, circular and pipe", Expected: "one of them"}
 	}
 	c := Explain(p)
-	if c.Equation != Slab {
-		return nil, c.Reasons, &solvers.ScopeError{Section: c.Section, Equation: string(c.Equation)}
-	}
-	problem, err := newSlab(p)
+	problem, err := build(c, p)
 	if err != nil {
 		return nil, c.Reasons, err
 	}
 	return problem, c.Reasons, nil
+}
+
+// build makes the problem of the equation chosen.
+func build(c Choice, p *schema.Physics) (solvers.Problem, error) {
+	switch c.Equation {
+	case Slab:
+		return newSlab(p)
+	case FullVector:
+		return guide.New(p)
+	}
+	return nil, &solvers.ScopeError{Section: c.Section, Equation: string(c.Equation)}
 }

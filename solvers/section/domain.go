@@ -28,15 +28,16 @@ func (p plan) domain(bounds Bounds) (plan, error) {
 		}
 	}
 	for _, side := range []struct {
-		name  string
-		open  bool
-		bound float64
+		name             string
+		open             bool
+		bound, low, high float64
 	}{
-		{"left", open.left, bounds.Left}, {"right", open.right, bounds.Right},
-		{"bottom", open.bottom, bounds.Bottom}, {"top", open.top, bounds.Top},
+		{"left", open.left, bounds.Left, left.V, right.V}, {"right", open.right, bounds.Right, left.V, right.V},
+		{"bottom", open.bottom, bounds.Bottom, bottom.V, top.V}, {"top", open.top, bounds.Top, bottom.V, top.V},
 	} {
-		if side.open && !(side.bound > 0 && side.bound <= math.MaxFloat64) {
-			return p, &solvers.InputError{Where: "mesh", Found: fmt.Sprintf("a bound of %g m at the %s", side.bound, side.name), Expected: "one above zero"}
+		floor := least([]float64{side.low, side.high}) // nearer than this a wall would coincide with the section
+		if side.open && !(side.bound > floor && side.bound <= math.MaxFloat64) {
+			return p, &solvers.InputError{Where: "mesh", Found: fmt.Sprintf("a bound of %g m at the %s", side.bound, side.name), Expected: fmt.Sprintf("a finite one above %g m", floor)}
 		}
 	}
 	if p.left == nil {

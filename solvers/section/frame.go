@@ -111,20 +111,23 @@ func (f *frame) place() error {
 // check holds that every cell is a convex quadrilateral, with digits left in
 // its width and height.
 func (f *frame) check() error {
-	narrow := func(what string, a, b float64) error {
-		return &solvers.InputError{Where: "mesh", Found: fmt.Sprintf("%s at %g m and %g m", what, a, b), Expected: "a section whose numbers are not so far apart"}
+	narrow := func(what string, a, b float64, all []float64) error {
+		return &solvers.InputError{
+			Where: "mesh", Found: fmt.Sprintf("%s at %g m and %g m, of a mesh from %g m to %g m", what, a, b, all[0], all[len(all)-1]),
+			Expected: "a section and bounds whose numbers are not so far apart",
+		}
 	}
 	y := f.m.Y
 	for j := 1; j < len(y); j++ {
 		height := y[j] - y[j-1]
 		if !(height > least(y)) {
-			return narrow("levels", y[j-1], y[j])
+			return narrow("levels", y[j-1], y[j], y)
 		}
 		for _, x := range f.m.X[j-1 : j+1] {
 			floor := least(x)
 			for i := 1; i < len(x); i++ {
 				if w := x[i] - x[i-1]; !(w > floor && w*height > 0) {
-					return narrow("vertical lines", x[i-1], x[i])
+					return narrow("vertical lines", x[i-1], x[i], x)
 				}
 			}
 		}

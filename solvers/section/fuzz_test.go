@@ -103,8 +103,23 @@ func FuzzMesh(f *testing.F) {
 					quadrilateral(t, m, j, i)
 				}
 			}
+			moving(t, m)
 		}
 	})
+}
+
+// moving holds that every derivative of a mesh is a finite number.
+func moving(t *testing.T, m *Mesh) {
+	t.Helper()
+	for p := range m.DX {
+		for j, rate := range m.DY[p] {
+			for i, x := range append([]float64{rate}, m.DX[p][j]...) {
+				if x-x != 0 {
+					t.Fatalf("parameter %d moves level %d, place %d by %g", p, j, i, x)
+				}
+			}
+		}
+	}
 }
 
 func accept(t *testing.T, err error) {

@@ -1,7 +1,13 @@
 package section
 
+import (
+	"fmt"
+
+	"betaloom/solvers"
+)
+
 // differentiate sets DX and DY: the shares are constants, so that lines move
-// as the walls and levels between which they stand.
+// as the walls and levels between which they stand. Derivatives that overflow are refused.
 func (f *frame) differentiate() error {
 	f.m.DX, f.m.DY = make([][][]float64, f.params), make([][]float64, f.params)
 	moving := 0
@@ -12,6 +18,12 @@ func (f *frame) differentiate() error {
 				return tooMany("derivatives")
 			}
 			f.m.DX[p], f.m.DY[p] = f.motion(p)
+			if !bounded(f.m.DY[p]) || !bounded(f.m.DX[p]...) {
+				return &solvers.InputError{
+					Where: "mesh", Found: fmt.Sprintf("lines that move without bound with base parameter %d", p),
+					Expected: "finite derivatives: a section and bounds whose numbers are not so far apart",
+				}
+			}
 		}
 	}
 	return nil
@@ -45,4 +57,15 @@ func (f *frame) motion(p int) ([][]float64, []float64) {
 		}
 	}
 	return dx, dy
+}
+
+// bounded reports whether all numbers are finite.
+func bounded(lists ...[]float64) bool {
+	rest := 0.0
+	for _, list := range lists {
+		for _, v := range list {
+			rest += v - v
+		}
+	}
+	return rest == 0
 }

@@ -156,6 +156,95 @@ func TestOptions(t *testing.T) {
 	}
 }
 
+// TestBoundsApart refuses bounds that leave the section no digits, or that
+// have none beside it.
+func TestBoundsApart(t *testing.T) {
+	s := one(0.3*um, func(s *sketch) []schema.Strip { return list(s.strip(0.1*um, 0.5*um, 85, 80)) })
+	layers := s.physics.Section.Layers
+	open := layers.Layers[2]
+	layers.Layers = layers.Layers[:2]
+	s.layer("core", 0.2*um, "air", s.strip(0, 0.3*um, 90, 90), s.strip(1*um, 0.4*um, 90, 90)) // lines that are free in one layer
+	layers.Layers = append(layers.Layers, open)
+	o := s.must(t)
+	const far, hair = 1e117, 1e-76
+	lines := []string{"mesh: ", "vertical lines at ", "a section and bounds whose numbers are not so far apart"}
+	for _, c := range []struct {
+		name     string
+		bounds   Bounds
+		messages []string
+	}{
+		{"far left", Bounds{far, 1 * um, 1 * um, 1 * um}, append(lines, "of a mesh from -1e+117 m to ")},
+		{"far right", Bounds{1 * um, far, 1 * um, 1 * um}, append(lines, "to 1e+117 m")},
+		{"far left and right", Bounds{far, far, 1 * um, 1 * um}, lines},
+		{"the greatest float", Bounds{math.MaxFloat64, math.MaxFloat64, 1 * um, 1 * um}, []string{"at most 1000 cells"}},
+		{"far bottom", Bounds{1 * um, 1 * um, far, 1 * um}, []string{"levels at ", "of a mesh from -1e+117 m to "}},
+		{"far top", Bounds{1 * um, 1 * um, 1 * um, far}, []string{"levels at ", "to 1e+117 m"}},
+		{"far left, hairs elsewhere", Bounds{far, hair, hair, hair}, []string{"a bound of 1e-76 m at the right", "a finite one above "}},
+		{"far right, a hair at the left", Bounds{hair, far, 1 * um, 1 * um}, []string{"a bound of 1e-76 m at the left"}},
+		{"hair at the left", Bounds{hair, 1 * um, 1 * um, 1 * um}, []string{"a bound of 1e-76 m at the left", "a finite one above "}},
+		{"hair at the right", Bounds{1 * um, hair, 1 * um, 1 * um}, []string{"a bound of 1e-76 m at the right"}},
+		{"hair at the bottom", Bounds{1 * um, 1 * um, hair, 1 * um}, []string{"a bound of 1e-76 m at the bottom"}},
+		{"hair at the top", Bounds{1 * um, 1 * um, 1 * um, hair}, []string{"a bound of 1e-76 m at the top"}},
+	} {
+		t.Run(c.name, func(t *testing.T) {
+			_, err := o.Mesh(Options{Bounds: c.bounds})
+			refused(t, err, c.messages...)
+		})
+	}
+}
+
+// TestMotionOverflows refuses layers so thin that one over their thickness is
+// no float: the wall that runs on through two of them has no derivative.
+func TestMotionOverflows(t *testing.T) {
+	for _, c := range []struct {
+		name    string
+		h       float64
+		refused bool
+	}{{"thin", 1e-305, false}, {"below the normal floats", 1e-310, true}} {
+		t.Run(c.name, func(t *testing.T) {
+			s := newSketch().layer("oxide", -1, "")
+			s.layer("core", c.h, "air", s.strip(0, 1, 90, 90)).layer("oxide", c.h, "").layer("nitride", c.h, "")
+			s.layer("core", c.h, "air", s.strip(0, 1, 90, 90)).layer("air", -1, "")
+			m, err := s.must(t).Mesh(Options{Bounds: Bounds{1, 1, c.h, c.h}})
+			if c.refused {
+				refused(t, err, "mesh: ", "lines that move without bound", "finite derivatives")
+				return
+			}
+			if err != nil {
+				t.Fatal(err)
+			}
+			moving(t, m)
+		})
+	}
+}
+
+// TestRatio holds that widths which are none give the worst ratio there is:
+// of the webs of such a plan one is still taken, for the mesh to be refused.
+func TestRatio(t *testing.T) {
+	inf, nan := math.Inf(1), math.NaN()
+	for _, c := range []struct {
+		name       string
+		a, b, want float64
+	}{
+		{"narrower at the top", 2, 1, 0.5},
+		{"narrower at the bottom", 1, 2, 0.5},
+		{"equal", 1e-9, 1e-9, 1},
+		{"both shut", 0, 0, 0},
+		{"one shut", 0, 1, 0},
+		{"lines cross in between", -3, 1, 0},
+		{"lines in the wrong order", -3, -2, 0},
+		{"both infinite", inf, inf, 0},
+		{"one infinite", 1, inf, 0},
+		{"not a number", nan, 1, 0},
+	} {
+		t.Run(c.name, func(t *testing.T) {
+			if got := ratio(c.a, c.b); got != c.want { // exact: powers of two
+				t.Errorf("%g, expected %g", got, c.want)
+			}
+		})
+	}
+}
+
 // TestManyStrips bounds the size of a mesh before it takes memory.
 func TestManyStrips(t *testing.T) {
 	o := one(0.3*um, func(s *sketch) []schema.Strip {

@@ -1,5 +1,7 @@
 package section
 
+import "math"
+
 // worstTaper is how much more a cell may taper than the strip or gap of its
 // section that tapers most, before fewer lines are shared.
 const worstTaper = 0.2
@@ -45,4 +47,12 @@ func (w *web) taper() float64 {
 	return least
 }
 
-func ratio(a, b float64) float64 { return min(a, b) / max(a, b) }
+// ratio is the lesser of two widths over the greater, from 0 to 1: 0 where
+// a width is not above zero, or not a number.
+func ratio(a, b float64) float64 {
+	low, high := min(a, b), max(a, b)
+	if !(low > 0 && high <= math.MaxFloat64) {
+		return 0
+	}
+	return low / high
+}

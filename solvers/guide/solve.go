@@ -1,0 +1,364 @@
+package guide
+
+import (
+	"errors"
+	"fmt"
+	"math"
+	"math/cmplx"
+	"sort"
+
+	"betaloom/schema"
+	"betaloom/solvers"
+	"betaloom/solvers/channel"
+	"betaloom/solvers/jet"
+	"betaloom/solvers/section"
+)
+
+const lightSpeed = schema.LightSpeed
+
+// start is what a neighbouring point hands on.
+type start struct {
+	level   int
+	bounds  section.Bounds
+	classes map[string]warm // by label
+}
+
+// warm is the vectors of a class at the coarse and the fine level.
+type warm [2]vectors
+
+type vectors struct {
+	mesh *section.Mesh
+	x    [][]complex128
+}
+
+// fits gives the vectors where they belong to such a mesh.
+func (v *vectors) fits(m *section.Mesh) [][]complex128 {
+	if v.mesh == nil || !v.mesh.Same(m) {
+		return nil
+	}
+	return v.x
+}
+
+func startOf(near []solvers.Mode) *start {
+	for _, m := range near {
+		if s, ok := m.State.(*start); ok {
+			return s
+		}
+	}
+	return nil
+}
+
+// solved is a mode of one discretisation.
+type solved struct {
+	pair   channel.Pair
+	pencil *channel.Pencil
+	class  *class
+	d      channel.Derivatives
+	beta   jet.Jet
+	k      float64
+}
+
+func (m *solved) neff() float64 { return real(m.beta.V) / m.k }
+func (m *solved) ng() float64   { return real(m.beta.W) * lightSpeed }
+
+// classModes is the modes of a class in one discretisation, from the highest down.
+type classModes struct {
+	class *class
+	mesh  *section.Mesh
+	modes []solved
+}
+
+// solve finds the modes of a point.
+func (p *point) solve(s *start) ([]solvers.Mode, solvers.Count, error) {
+	if s == nil {
+		s = &start{level: 1, bounds: p.guess()}
+	}
+	for i := range p.classes {
+		p.classes[i].start = s.classes[p.classes[i].label]
+	}
+	if err := p.census(); err != nil {
+		return nil, solvers.Count{}, err
+	}
+	p.bounds = s.bounds
+	p.level(&p.bounds)
+	coarse, err := p.settle(s.level - 1)
+	if err != nil {
+		return nil, solvers.Count{}, err
+	}
+	count := p.count()
+	if len(coarse) == 0 {
+		return nil, count, nil
+	}
+	answer, at, err := p.climb(coarse, s.level)
+	if err != nil {
+		return nil, solvers.Count{}, err
+	}
+	return p.modes(answer, at), count, nil
+}
+
+// count is that of all classes.
+func (p *point) count() (c solvers.Count) {
+	c.Proof = "inertia"
+	low := math.Inf(1)
+	for i := range p.classes {
+		c.N += p.classes[i].census
+		low = min(low, p.classes[i].low)
+	}
+	if c.N == 0 {
+		c.Reason = fmt.Sprintf("no mode has an effective index more than %g above %.9g, that of what surrounds the core", closest, low)
+	}
+	return c
+}
+
+// censusLevel is the level at which modes are counted, with walls so far away that all are seen.
+const censusLevel = 1
+
+// census counts the guided modes of every class.
+func (p *point) census() error {
+	for i := range p.classes {
+		c := &p.classes[i]
+		if c.low >= p.densest() {
+			continue
+		}
+		far := p.farthest(c)
+		p.level(&far)
+		pencil, _, err := p.assemble(c, censusLevel, &far)
+		if err != nil {
+			return err
+		}
+		if c.census, err = pencil.Count(p.ctx, c.low); err != nil {
+			return err
+		}
+		if c.census < 0 {
+			return &solvers.InputError{Where: "section", Found: "a permittivity whose real part is not above zero", Expected: "dielectrics"}
+		}
+	}
+	return nil
+}
+
+func (p *point) assemble(c *class, at int, b *section.Bounds) (*channel.Pencil, *section.Mesh, error) {
+	m, err := p.mesh(c, at, b)
+	if err != nil {
+		return nil, nil, err
+	}
+	t, err := p.shelf.topology(m)
+	if err != nil {
+		return nil, nil, err
+	}
+	if t.Unknowns() > most {
+		return nil, nil, errLarge
+	}
+	pencil, err := t.Assemble(m, p.w, p.outline.Media)
+	return pencil, m, err
+}
+
+// errLarge says that a level has more unknowns than are taken on.
+var errLarge = errors.New("the section is too large for a finer mesh")
+
+// find solves one class at a level: at most want modes.
+func (p *point) find(c *class, at, want, stage int) (classModes, error) {
+	out := classModes{class: c}
+	pencil, mesh, err := p.assemble(c, at, &p.bounds)
+	if err != nil {
+		return out, err
+	}
+	out.mesh = mesh
+	o := channel.Options{Want: want, Low: c.low, Near: c.start[stage].fits(mesh), Slopes: true}
+	if len(o.Near) >= want {
+		o.Near, o.Expect = o.Near[:want], want
+	}
+	pairs, _, err := pencil.Modes(p.ctx, o)
+	if err != nil && o.Expect > 0 && p.ctx.Err() == nil {
+		o.Expect = 0
+		pairs, _, err = pencil.Modes(p.ctx, o)
+	}
+	if err != nil {
+		return out, err
+	}
+	v := vectors{mesh: mesh}
+	for _, m := range pairs {
+		s := solved{pair: m, pencil: pencil, class: c, d: pencil.Differentiate(&m), k: p.k}
+		s.beta = jet.Sqrt(s.d.L)
+		out.modes = append(out.modes, s)
+		v.x = append(v.x, m.X)
+	}
+	c.start[stage] = v
+	return out, nil
+}
+
+// attempts bounds how often walls are moved.
+const attempts = 16
+
+// settle solves the coarse level and moves the walls until they are far enough for the modes that will be reported.
+func (p *point) settle(at int) ([]classModes, error) {
+	for range attempts {
+		sets, err := p.all(at)
+		if err != nil {
+			return nil, err
+		}
+		chosen := p.choose(sets)
+		if p.hidden(sets, chosen) || p.widen(&p.bounds, chosen) {
+			continue
+		}
+		p.drop(sets)
+		return chosen, nil
+	}
+	return nil, &solvers.ConvergenceError{Where: "walls", Err: errors.New("the modes did not settle as the computational walls moved outward")}
+}
+
+// all solves every class that has modes.
+func (p *point) all(at int) (sets []classModes, err error) {
+	for i := range p.classes {
+		c := &p.classes[i]
+		if c.census == 0 {
+			continue
+		}
+		set, err := p.find(c, at, min(p.want, c.census), 0)
+		if err != nil {
+			return nil, err
+		}
+		sets = append(sets, set)
+	}
+	return sets, nil
+}
+
+// choose keeps the modes of highest index.
+func (p *point) choose(sets []classModes) []classModes {
+	var values []float64
+	for _, s := range sets {
+		for i := range s.modes {
+			values = append(values, s.modes[i].neff())
+		}
+	}
+	sort.Sort(sort.Reverse(sort.Float64Slice(values)))
+	low := math.Inf(-1)
+	if len(values) > p.want {
+		low = values[p.want-1]
+	}
+	var out []classModes
+	left := p.want
+	for _, s := range sets {
+		n := 0
+		for n < len(s.modes) && n < left && s.modes[n].neff() >= low {
+			n++
+		}
+		left -= n
+		if n > 0 {
+			s.modes = s.modes[:n]
+			out = append(out, s)
+		}
+	}
+	return out
+}
+
+// hidden moves the walls outward where they may hide a mode that would be reported: counted with walls far away and not
+// found; such a mode reaches as far as the walls.
+func (p *point) hidden(sets, chosen []classModes) bool {
+	lowest, n := math.Inf(1), 0
+	for _, s := range chosen {
+		for i := range s.modes {
+			lowest, n = min(lowest, s.modes[i].neff()), n+1
+		}
+	}
+	moved := false
+	for _, s := range sets {
+		if len(s.modes) >= min(p.want, s.class.census) {
+			continue
+		}
+		far := p.farthest(s.class)
+		for side, open := range p.openSides() {
+			d, most := distance(&p.bounds, side), *distance(&far, side)
+			reach := 3 / (p.k * *d)
+			if open && *d < most && (n < p.want || lowest*lowest < s.class.low*s.class.low+reach*reach) {
+				*d = min(2.5**d, most)
+				moved = true
+			}
+		}
+	}
+	p.level(&p.bounds)
+	return moved
+}
+
+// drop takes modes that were counted and are nowhere to be found, hence closer to their cut-off than is looked for,
+// off the count.
+func (p *point) drop(sets []classModes) {
+	for _, s := range sets {
+		if n := len(s.modes); n < min(p.want, s.class.census) {
+			s.class.census = n
+		}
+	}
+}
+
+// refined is a chosen mode at two levels.
+type refined struct {
+	fine, coarse *solved
+	bound        bound
+}
+
+// climb solves finer and finer levels until the difference of the last two is small enough.
+func (p *point) climb(coarse []classModes, at int) ([]refined, int, error) {
+	for ; ; at++ {
+		fine, err := p.finer(coarse, at)
+		if err != nil {
+			return nil, 0, err
+		}
+		answer := p.pairUp(fine, coarse)
+		if p.reached(answer) || at+1 >= len(levels()) || !p.affordable(at+1) {
+			return answer, at, nil
+		}
+		coarse = fine
+		for i := range p.classes {
+			p.classes[i].start[0], p.classes[i].start[1] = p.classes[i].start[1], vectors{}
+		}
+	}
+}
+
+// finer solves the classes of modes at a level.
+func (p *point) finer(sets []classModes, at int) (out []classModes, err error) {
+	for _, s := range sets {
+		set, err := p.find(s.class, at, len(s.modes), 1)
+		if err != nil {
+			return nil, err
+		}
+		if len(set.modes) < len(s.modes) {
+			return nil, &solvers.ConvergenceError{Where: "modes " + s.class.label, Err: fmt.Errorf("%d of %d on a finer mesh", len(set.modes), len(s.modes))}
+		}
+		out = append(out, set)
+	}
+	return out, nil
+}
+
+// affordable says whether a level is not too large for any class.
+func (p *point) affordable(at int) bool {
+	for i := range p.classes {
+		if c := &p.classes[i]; c.census > 0 {
+			if _, _, err := p.assemble(c, at, &p.bounds); err != nil {
+				return false
+			}
+		}
+	}
+	return true
+}
+
+// pairUp finds for each fine mode the coarse one that it is: nearest in index and group index.
+func (p *point) pairUp(fine, coarse []classModes) (out []refined) {
+	for i := range fine {
+		taken := make([]bool, len(coarse[i].modes))
+		for j := range fine[i].modes {
+			f := &fine[i].modes[j]
+			best, at := math.Inf(1), -1
+			for n := range coarse[i].modes {
+				c := &coarse[i].modes[n]
+				if d := cmplx.Abs(f.beta.V-c.beta.V)/p.k + 0.01*math.Abs(f.ng()-c.ng()); !taken[n] && d < best {
+					best, at = d, n
+				}
+			}
+			taken[at] = true
+			r := refined{fine: f, coarse: &coarse[i].modes[at]}
+			r.bound = p.bound(&r)
+			out = append(out, r)
+		}
+	}
+	sort.SliceStable(out, func(i, j int) bool { return out[i].fine.neff() > out[j].fine.neff() })
+	return out
+}
