@@ -18,6 +18,10 @@ type Options struct {
 	Low  float64        // effective index above which a mode is wanted, > 0
 	Near [][]complex128 // vectors of a neighbouring pencil of the same topology to start from, one a mode; may be nil
 
+	// Guess is effective indices near which modes are expected, from the highest down: where there are no Near vectors
+	// the search begins at these.
+	Guess []float64
+
 	// Expect is how many modes are known to be above Low, 0 where they are to be counted. The wanted ones are proven to be
 	// the highest all the same; the count is then Expect, without a proof of its own.
 	Expect int
@@ -88,12 +92,13 @@ type finder[T ldl.Number] struct {
 	ctx     context.Context
 	s       *system[T]
 	f       *factor[T]
-	at      float64 // where f stands
-	ready   bool    // f is filled
-	low     float64 // N above which a mode counts
-	high    float64 // no mode above
-	counted bool    // inertia counts modes
-	total   int     // modes above low, -1: not known
+	at      float64        // where f stands
+	ready   bool           // f is filled
+	rates   *slopeRates[T] // nil where no slopes are asked for
+	low     float64        // N above which a mode counts
+	high    float64        // no mode above
+	counted bool           // inertia counts modes
+	total   int            // modes above low, -1: not known
 	want    int
 	found   []pair[T] // from the highest Re N down
 	proven  []proof
@@ -124,9 +129,12 @@ func modesOf[T ldl.Number](ctx context.Context, p *Pencil, s *system[T], kit *ki
 			fd.want = n
 		}
 	}
-	err := fd.run(o.Near)
+	if o.Slopes {
+		fd.rates = &slopeRates[T]{p, kit, newRates[T](p.kappa)}
+	}
+	err := fd.run(o.Near, o.Guess)
 	if err == nil && o.Slopes {
-		err = fd.slopes(p, kit)
+		err = fd.slopes()
 	}
 	pairs := fd.pairs(p.k)
 	if err != nil {
@@ -213,19 +221,25 @@ func (fd *finder[T]) factor(at T) (proof, error) {
 var errMissing = errors.New("modes that the inertia counts were not found")
 
 // run finds the modes.
-func (fd *finder[T]) run(near [][]complex128) error {
+func (fd *finder[T]) run(near [][]complex128, guess []float64) error {
 	if fd.want == 0 && fd.total == 0 {
 		return nil
 	}
 	start := fd.convert(near)
-	if len(start) > 0 {
+	begun := len(start) > 0
+	if begun {
 		if err := fd.refine(start); err != nil {
+			return err
+		}
+	} else if len(guess) > 0 {
+		begun = true
+		if err := fd.begin(guess); err != nil {
 			return err
 		}
 	}
 	shift := fd.high
 	for round := 0; ; round++ {
-		if len(start) == 0 || round > 0 {
+		if !begun || round > 0 {
 			if err := fd.search(shift); err != nil {
 				return err
 			}

@@ -15,27 +15,28 @@ type Shares struct {
 	ExShare float64   // integral of |Ex|^2 over that of |Ex|^2 + |Ey|^2
 	Aeff    float64   // (int S)^2 / int S^2 of the axial power flow S, m^2
 	Parts   []float64 // share of the axial power of each part of the outline
+	Power   float64   // axial power of the fields that Samples gives, W
 }
 
 // Shares integrates a mode's fields; parts is the number of the outline's.
 func (p *Pencil) Shares(m *Pair, parts int) Shares {
 	if p.lossless {
-		return sharesOf(p, &p.t.real, convertAll[float64](m.X), parts)
+		return sharesOf(p, &p.t.real, m, convertAll[float64](m.X), parts)
 	}
-	return sharesOf(p, &p.t.cplx, m.X, parts)
+	return sharesOf(p, &p.t.cplx, m, m.X, parts)
 }
 
-func sharesOf[T ldl.Number](p *Pencil, kit *kit[T], x []T, parts int) Shares {
+func sharesOf[T ldl.Number](p *Pencil, kit *kit[T], m *Pair, x []T, parts int) Shares {
 	s := Shares{Parts: make([]float64, parts)}
 	copies := float64(max(p.mesh.Copies, 1))
-	var ex, ey, power, square float64
+	var ex, ey, power, lag, square float64
 	v, f := kit.evaluator(p.t), &kit.fields[0]
 	for i := range p.t.cells {
 		c := &p.t.cells[i]
 		r := p.t.rule(c.orders, corners(p.mesh, c.i, c.j, 1))
 		v.evaluate(c, r, x, f)
 		w := flow(r, f)
-		ex, ey, power, square = ex+w.ex, ey+w.ey, power+w.s, square+w.ss
+		ex, ey, power, lag, square = ex+w.ex, ey+w.ey, power+w.s, lag+w.lag, square+w.ss
 		if p.mesh.Part != nil {
 			for _, part := range p.mesh.Part[c.j][c.i] {
 				s.Parts[part] += w.s / copies
@@ -46,11 +47,13 @@ func sharesOf[T ldl.Number](p *Pencil, kit *kit[T], x []T, parts int) Shares {
 		s.Parts[i] /= power
 	}
 	s.ExShare, s.Aeff = ex/(ex+ey), copies*power*power/square
+	s.Power = copies * real(complex(power, lag)/cmplx.Sqrt(m.L)) / (2 * 4e-7 * math.Pi * schema.LightSpeed * p.k)
 	return s
 }
 
-// flows are a cell's integrals of |Ex|^2, |Ey|^2, the axial power flow and its square, each to a factor.
-type flows struct{ ex, ey, s, ss float64 }
+// flows are a cell's integrals of |Ex|^2, |Ey|^2, the axial power flow and its square, each to a factor; lag is the
+// imaginary part of e s*, of which s is the real one.
+type flows struct{ ex, ey, s, lag, ss float64 }
 
 func flow[T ldl.Number](r *ruled, f *field[T]) (w flows) {
 	n := len(r.fx.x)
@@ -66,6 +69,7 @@ func flow[T ldl.Number](r *ruled, f *field[T]) (w flows) {
 			w.ey += area * square(ey)
 			s := real(ex)*real(sx) + imag(ex)*imag(sx) + real(ey)*real(sy) + imag(ey)*imag(sy)
 			w.s += area * s
+			w.lag += area * (imag(ex)*real(sx) - real(ex)*imag(sx) + imag(ey)*real(sy) - real(ey)*imag(sy))
 			w.ss += area * s * s
 		}
 	}

@@ -53,12 +53,37 @@ func (fd *finder[T]) refine(v [][]T) error {
 	return nil
 }
 
+// begin looks for modes near effective indices, those close to each other together, from vectors that know nothing.
+func (fd *finder[T]) begin(guess []float64) error {
+	k := &krylov[T]{fd: fd, work: make([]T, fd.s.t.unknowns)}
+	for len(guess) > 0 {
+		n := 1
+		for n < len(guess) && guess[n-1]-guess[n] < near*guess[n] {
+			n++
+		}
+		list := make([]pair[T], n)
+		for i := range list {
+			x := k.random()
+			list[i] = pair[T]{n: fromReal[T](guess[i] * guess[i] * (1 - unsure)), x: x, bx: make([]T, len(x))}
+			fd.s.multiply(list[i].bx, x, 0, 1)
+		}
+		if err := fd.polish(list); err != nil {
+			return err
+		}
+		guess = guess[n:]
+	}
+	return nil
+}
+
+// unsure is how far below a guess the first shift is, relative to it.
+const unsure = 1e-3
+
 // polish iterates on a cluster. Where that is slow, because the first projection had N wrong, the shift moves.
 func (fd *finder[T]) polish(list []pair[T]) error {
 	if err := fd.under(list); err != nil || !(realPart(list[0].n) > 0) {
 		return err
 	}
-	before := math.Inf(1)
+	before, worst := math.Inf(1), math.Inf(1)
 	for range rounds {
 		v := make([][]T, len(list))
 		for i, m := range list {
@@ -70,7 +95,7 @@ func (fd *finder[T]) polish(list []pair[T]) error {
 			break
 		}
 		list = next
-		worst := 0.0
+		worst = 0
 		for _, m := range list {
 			worst = max(worst, m.residual)
 		}
@@ -83,6 +108,9 @@ func (fd *finder[T]) polish(list []pair[T]) error {
 			}
 		}
 		before = worst
+	}
+	if fd.rates != nil && worst < stale {
+		fd.clusterSlopes(list)
 	}
 	for _, m := range list {
 		fd.accept(m)

@@ -36,8 +36,8 @@ func (fd *finder[T]) search(shift float64) error {
 	return fd.refine(found)
 }
 
-// start is the same pseudo-random vector for the same number of the search.
-func (k *krylov[T]) start() []T {
+// random is the same pseudo-random vector for the same number of the search.
+func (k *krylov[T]) random() []T {
 	x := make([]T, len(k.work))
 	k.fd.seed++
 	state := k.fd.seed * 0x9e3779b97f4a7c15
@@ -45,6 +45,12 @@ func (k *krylov[T]) start() []T {
 		state = state*6364136223846793005 + 1442695040888963407
 		x[i] = fromReal[T]((float64(state>>11)/(1<<53) - 0.5) / math.Sqrt(w))
 	}
+	return x
+}
+
+// start is a vector with little outside the modes near the shift.
+func (k *krylov[T]) start() []T {
+	x := k.random()
 	k.apply(x)
 	scale(x, fromReal[T](1/norm(x)))
 	return x

@@ -77,9 +77,15 @@ const (
 	slopePrecise = 1e-12 // relative residual at which to stop
 )
 
-// slopes gives every wanted mode the derivative of its vector in w.
-func (fd *finder[T]) slopes(p *Pencil, kit *kit[T]) error {
-	k := newRates[T](p.kappa)
+// slopeRates is what vectors' derivatives need to know of the pencil.
+type slopeRates[T ldl.Number] struct {
+	p   *Pencil
+	kit *kit[T]
+	k   *rates[T]
+}
+
+// slopes gives those wanted modes their vector's derivative that have none yet.
+func (fd *finder[T]) slopes() error {
 	list := fd.found
 	if fd.want > 0 && len(list) > fd.want {
 		list = list[:fd.want]
@@ -89,39 +95,39 @@ func (fd *finder[T]) slopes(p *Pencil, kit *kit[T]) error {
 		for n < len(list) && ldl.Abs1(list[n-1].n-list[n].n) < near*ldl.Abs1(list[n].n) {
 			n++
 		}
-		if err := fd.clusterSlopes(p, kit, k, list[:n]); err != nil {
-			return err
+		done := true
+		for _, m := range list[:n] {
+			done = done && m.x1 != nil
+		}
+		if !done {
+			if err := fd.under(list[:n]); err != nil {
+				return err
+			}
+			fd.clusterSlopes(list[:n])
 		}
 		list = list[n:]
 	}
 	return nil
 }
 
-// clusterSlopes does so for modes that share a shift.
-func (fd *finder[T]) clusterSlopes(p *Pencil, kit *kit[T], k *rates[T], list []pair[T]) error {
-	low := realPart(list[len(list)-1].n)
-	if d := low - fd.at; !(fd.ready && d > 0 && d < 3*offset*low) {
-		if err := fd.under(list); err != nil {
-			return err
-		}
-	}
-	fd.settle(p, kit, k, list)
+// clusterSlopes finds the derivatives of modes that share the present shift.
+func (fd *finder[T]) clusterSlopes(list []pair[T]) {
+	fd.settle(list)
 	for i := range list {
-		r := fd.pull(p, kit, k, &list[i])
-		list[i].x1 = fd.constrained(list, i, r)
+		list[i].x1 = fd.constrained(list, i, fd.pull(&list[i]))
 	}
-	return nil
 }
 
 // pull is -F1 x in the units of the system: F_w x and n1 B x, with n1 = -x'F_w x/x'Bx.
-func (fd *finder[T]) pull(p *Pencil, kit *kit[T], k *rates[T], m *pair[T]) []T {
+func (fd *finder[T]) pull(m *pair[T]) []T {
+	p, k := fd.rates.p, fd.rates.k
 	k2 := fromReal[T](p.k * p.k)
 	coef := make([][3]T, len(k.w))
 	for i, w := range k.w {
 		coef[i] = [3]T{w[0] / k2, w[1] / k2, m.n * w[2]}
 	}
 	r := make([]T, len(m.x))
-	mediaProduct(p, kit, r, m.x, coef)
+	mediaProduct(p, fd.rates.kit, r, m.x, coef)
 	add(r, m.bx, -bilinear(m.x, r)/bilinear(m.x, m.bx))
 	return r
 }
@@ -175,14 +181,14 @@ func (fd *finder[T]) residual(res, r, y []T, n T) {
 
 // settle turns the vectors of twins, which their equation leaves open, to those that twins have at neighbouring frequencies:
 // such that x_i'F_w x_j = 0.
-func (fd *finder[T]) settle(p *Pencil, kit *kit[T], k *rates[T], list []pair[T]) {
+func (fd *finder[T]) settle(list []pair[T]) {
 	for i := 0; i < len(list); {
 		n := 1
 		for i+n < len(list) && ldl.Abs1(list[i+n].n-list[i].n) < same*ldl.Abs1(list[i].n) {
 			n++
 		}
 		if n > 1 {
-			fd.turnTwins(p, kit, k, list[i:i+n])
+			fd.turnTwins(list[i : i+n])
 		}
 		i += n
 	}
@@ -192,11 +198,11 @@ func (fd *finder[T]) settle(p *Pencil, kit *kit[T], k *rates[T], list []pair[T])
 const same = 1e-12
 
 // turnTwins diagonalises X'F_w X with X'B X.
-func (fd *finder[T]) turnTwins(p *Pencil, kit *kit[T], k *rates[T], list []pair[T]) {
+func (fd *finder[T]) turnTwins(list []pair[T]) {
 	m := len(list)
 	a, b := make([][]complex128, m), make([][]complex128, m)
 	for i := range m {
-		r := fd.pull(p, kit, k, &list[i])
+		r := fd.pull(&list[i])
 		a[i], b[i] = make([]complex128, m), make([]complex128, m)
 		for j := range m {
 			a[i][j], b[i][j] = toComplex(bilinear(list[j].x, r)), toComplex(bilinear(list[j].x, list[i].bx))

@@ -160,14 +160,16 @@ func (k *class[T]) product(y, x []T, f *[terms]T) {
 // product adds the product of a mapped cell's matrix.
 func (l *local[T]) product(y, x []T, ca, cb T) {
 	n := len(x)
-	for i := range n {
-		for j := range i + 1 {
-			v := ca*l.ma[i*n+j] + cb*l.mb[i*n+j]
-			y[i] += v * x[j]
-			if i != j {
-				y[j] += v * x[i]
-			}
+	for i, xi := range x {
+		a, b := l.ma[i*n:i*n+i], l.mb[i*n:i*n+i]
+		lower, out := x[:i], y[:i]
+		sum := (ca*l.ma[i*n+i] + cb*l.mb[i*n+i]) * xi
+		for j, v := range a {
+			w := ca*v + cb*b[j]
+			sum += w * lower[j]
+			out[j] += w * xi
 		}
+		y[i] += sum
 	}
 }
 

@@ -93,6 +93,7 @@ func (p *point) solve(s *start) ([]solvers.Mode, solvers.Count, error) {
 	if err != nil {
 		return nil, solvers.Count{}, err
 	}
+	p.answer = answer
 	return p.modes(answer, at), count, nil
 }
 
@@ -156,16 +157,18 @@ func (p *point) assemble(c *class, at int, b *section.Bounds) (*channel.Pencil, 
 var errLarge = errors.New("the section is too large for a finer mesh")
 
 // find solves one class at a level: at most want modes.
-func (p *point) find(c *class, at, want, stage int) (classModes, error) {
+func (p *point) find(c *class, at, want, stage int, guess []float64) (classModes, error) {
 	out := classModes{class: c}
 	pencil, mesh, err := p.assemble(c, at, &p.bounds)
 	if err != nil {
 		return out, err
 	}
 	out.mesh = mesh
-	o := channel.Options{Want: want, Low: c.low, Near: c.start[stage].fits(mesh), Slopes: true}
+	o := channel.Options{Want: want, Low: c.low, Near: c.start[stage].fits(mesh), Guess: guess, Slopes: true}
 	if len(o.Near) >= want {
 		o.Near, o.Expect = o.Near[:want], want
+	} else if len(guess) >= want {
+		o.Near, o.Expect = nil, want
 	}
 	pairs, _, err := pencil.Modes(p.ctx, o)
 	if err != nil && o.Expect > 0 && p.ctx.Err() == nil {
@@ -191,10 +194,14 @@ const attempts = 16
 
 // settle solves the coarse level and moves the walls until they are far enough for the modes that will be reported.
 func (p *point) settle(at int) ([]classModes, error) {
+	guesses := map[string][]float64{}
 	for range attempts {
-		sets, err := p.all(at)
+		sets, err := p.all(at, guesses)
 		if err != nil {
 			return nil, err
+		}
+		for _, s := range sets {
+			guesses[s.class.label] = indices(s.modes)
 		}
 		chosen := p.choose(sets)
 		if p.hidden(sets, chosen) || p.widen(&p.bounds, chosen) {
@@ -207,13 +214,13 @@ func (p *point) settle(at int) ([]classModes, error) {
 }
 
 // all solves every class that has modes.
-func (p *point) all(at int) (sets []classModes, err error) {
+func (p *point) all(at int, guesses map[string][]float64) (sets []classModes, err error) {
 	for i := range p.classes {
 		c := &p.classes[i]
 		if c.census == 0 {
 			continue
 		}
-		set, err := p.find(c, at, min(p.want, c.census), 0)
+		set, err := p.find(c, at, min(p.want, c.census), 0, guesses[c.label])
 		if err != nil {
 			return nil, err
 		}
@@ -297,13 +304,17 @@ type refined struct {
 
 // climb solves finer and finer levels until the difference of the last two is small enough.
 func (p *point) climb(coarse []classModes, at int) ([]refined, int, error) {
+	var answer []refined
 	for ; ; at++ {
 		fine, err := p.finer(coarse, at)
+		if errors.Is(err, errLarge) && answer != nil {
+			return answer, at - 1, nil
+		}
 		if err != nil {
 			return nil, 0, err
 		}
-		answer := p.pairUp(fine, coarse)
-		if p.reached(answer) || at+1 >= len(levels()) || !p.affordable(at+1) {
+		answer = p.pairUp(fine, coarse)
+		if p.reached(answer) || at+1 >= len(levels()) {
 			return answer, at, nil
 		}
 		coarse = fine
@@ -316,7 +327,7 @@ func (p *point) climb(coarse []classModes, at int) ([]refined, int, error) {
 // finer solves the classes of modes at a level.
 func (p *point) finer(sets []classModes, at int) (out []classModes, err error) {
 	for _, s := range sets {
-		set, err := p.find(s.class, at, len(s.modes), 1)
+		set, err := p.find(s.class, at, len(s.modes), 1, indices(s.modes))
 		if err != nil {
 			return nil, err
 		}
@@ -328,16 +339,12 @@ func (p *point) finer(sets []classModes, at int) (out []classModes, err error) {
 	return out, nil
 }
 
-// affordable says whether a level is not too large for any class.
-func (p *point) affordable(at int) bool {
-	for i := range p.classes {
-		if c := &p.classes[i]; c.census > 0 {
-			if _, _, err := p.assemble(c, at, &p.bounds); err != nil {
-				return false
-			}
-		}
+// indices are the modes' effective indices.
+func indices(modes []solved) (n []float64) {
+	for i := range modes {
+		n = append(n, modes[i].neff())
 	}
-	return true
+	return n
 }
 
 // pairUp finds for each fine mode the coarse one that it is: nearest in index and group index.

@@ -15,7 +15,7 @@ const maxWalls = 4096
 
 // Mesh makes the mesh of the section, or of its half or quarter. The
 // computational walls move with the outermost wall ends. It refuses options out of range, a
-// mirror plane that is not there, and numbers so far apart that lines coincide, as a *solvers.InputError.
+// mirror plane that is not there, and numbers so far apart that lines coincide or derivatives overflow, as a *solvers.InputError.
 func (o *Outline) Mesh(options Options) (*Mesh, error) {
 	if err := options.Validate(); err != nil {
 		return nil, err

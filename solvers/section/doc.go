@@ -17,7 +17,8 @@
 // (MirrorX, MirrorY) are found wherever they lie. What cannot be four-sided cells is refused with an
 // *solvers.InputError: walls that meet or cross inside a layer, gaps that close at one end only,
 // strips that overlap or stand beyond the side walls, and conductors of no thickness. So is a section whose numbers are
-// so far apart that a cell's width has fewer than three digits left.
+// so far apart that a cell's width has fewer than three digits left, or that a derivative overflows. A bound that is lost
+// in the rounding of the place it counts from is refused by its name.
 //
 // Media are the dielectrics in use. Materials with the same permittivity in every derivative are one; those that
 // agree in value only are not, and no mirror plane joins them, since a parameter could move one alone.
