@@ -3,8 +3,7 @@ package channel
 // judge says whether all wanted modes are there, or where to look for the next.
 func (fd *finder[T]) judge(round int) (shift float64, done bool, err error) {
 	if !fd.counted {
-		enough := fd.want > 0 && len(fd.found) >= fd.want
-		return fd.high, enough || round >= 2, nil
+		return fd.lossy(round)
 	}
 	if len(fd.found) == fd.total {
 		return 0, true, nil
@@ -26,6 +25,27 @@ func (fd *finder[T]) judge(round int) (shift float64, done bool, err error) {
 		return top - min(1e-3*top, 0.1*(top-low)), false, nil
 	}
 	return fd.below(bad), false, nil
+}
+
+// lossy judges without a proof: as many modes as the real parts have down to the lowest wanted one are taken for all. Where fewer
+// were found, the search goes on from there a few times.
+func (fd *finder[T]) lossy(round int) (shift float64, done bool, err error) {
+	enough := fd.want > 0 && len(fd.found) >= fd.want
+	if round >= 4 || fd.reals == nil && (enough || round >= 2) {
+		return 0, true, nil
+	}
+	if !enough || fd.reals == nil {
+		return fd.high, round >= 2 && fd.total >= 0 && len(fd.found) >= fd.total, nil
+	}
+	at := fd.below(fd.want - 1)
+	n, err := fd.reals(at)
+	if err != nil || fd.foundAbove(at) >= n {
+		return 0, err == nil, err
+	}
+	if round%2 == 0 {
+		return at, false, nil
+	}
+	return fd.high, false, nil
 }
 
 // value is the Re N of found mode i.

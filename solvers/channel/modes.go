@@ -92,13 +92,14 @@ type finder[T ldl.Number] struct {
 	ctx     context.Context
 	s       *system[T]
 	f       *factor[T]
-	at      float64        // where f stands
-	ready   bool           // f is filled
-	rates   *slopeRates[T] // nil where no slopes are asked for
-	low     float64        // N above which a mode counts
-	high    float64        // no mode above
-	counted bool           // inertia counts modes
-	total   int            // modes above low, -1: not known
+	at      float64                        // where f stands
+	ready   bool                           // f is filled
+	rates   *slopeRates[T]                 // nil where no slopes are asked for
+	reals   func(low float64) (int, error) // counts the modes of the real parts above an N; nil where that is no guide
+	low     float64                        // N above which a mode counts
+	high    float64                        // no mode above
+	counted bool                           // inertia counts modes
+	total   int                            // modes above low, -1: not known
 	want    int
 	found   []pair[T] // from the highest Re N down
 	proven  []proof
@@ -128,6 +129,9 @@ func modesOf[T ldl.Number](ctx context.Context, p *Pencil, s *system[T], kit *ki
 		if fd.want == 0 || fd.want > n {
 			fd.want = n
 		}
+	}
+	if !fd.counted && p.positive {
+		fd.reals = func(low float64) (int, error) { return p.above(ctx, low) }
 	}
 	if o.Slopes {
 		fd.rates = &slopeRates[T]{p, kit, newRates[T](p.kappa)}

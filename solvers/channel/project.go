@@ -16,6 +16,9 @@ import (
 func (fd *finder[T]) project(v [][]T) ([]pair[T], error) {
 	v = independent(v)
 	m := len(v)
+	if m == 0 {
+		return nil, nil
+	}
 	av, bv := make([][]T, m), make([][]T, m)
 	for i, x := range v {
 		av[i], bv[i] = make([]T, len(x)), make([]T, len(x))

@@ -53,21 +53,24 @@ func (fd *finder[T]) refine(v [][]T) error {
 	return nil
 }
 
-// begin looks for modes near effective indices, those close to each other together, from vectors that know nothing.
+// begin looks for modes near effective indices, for those close to each other from one shift just below them.
 func (fd *finder[T]) begin(guess []float64) error {
-	k := &krylov[T]{fd: fd, work: make([]T, fd.s.t.unknowns)}
 	for len(guess) > 0 {
 		n := 1
 		for n < len(guess) && guess[n-1]-guess[n] < near*guess[n] {
 			n++
 		}
-		list := make([]pair[T], n)
-		for i := range list {
-			x := k.random()
-			list[i] = pair[T]{n: fromReal[T](guess[i] * guess[i] * (1 - unsure)), x: x, bx: make([]T, len(x))}
-			fd.s.multiply(list[i].bx, x, 0, 1)
+		low := guess[n-1] * guess[n-1]
+		pr, err := fd.factor(fromReal[T](low - fd.stepBelow(low, unsure)))
+		if err != nil {
+			return err
 		}
-		if err := fd.polish(list); err != nil {
+		k := &krylov[T]{fd: fd, shift: pr.at, work: make([]T, fd.s.t.unknowns)}
+		found, err := k.run(n, fine)
+		if err != nil {
+			return err
+		}
+		if err := fd.refine(found); err != nil {
 			return err
 		}
 		guess = guess[n:]
@@ -75,39 +78,46 @@ func (fd *finder[T]) begin(guess []float64) error {
 	return nil
 }
 
-// unsure is how far below a guess the first shift is, relative to it.
+// unsure is how far below a guess the shift is, relative to it.
 const unsure = 1e-3
 
 // polish iterates on a cluster. Where that is slow, because the first projection had N wrong, the shift moves.
 func (fd *finder[T]) polish(list []pair[T]) error {
-	if err := fd.under(list); err != nil || !(realPart(list[0].n) > 0) {
-		return err
+	if !(realPart(list[0].n) > 0) {
+		return nil
 	}
-	before, worst := math.Inf(1), math.Inf(1)
+	if !fd.served(list) {
+		if err := fd.under(list); err != nil {
+			return err
+		}
+	}
+	before, worst := math.Inf(1), residual(list)
 	for range rounds {
+		if worst < precise || worst < stale && worst > 0.3*before {
+			break
+		}
+		if worst > 0.1*before && !math.IsInf(before, 0) {
+			if err := fd.under(list); err != nil {
+				return err
+			}
+		}
+		before = worst
 		v := make([][]T, len(list))
 		for i, m := range list {
 			v[i] = append([]T{}, m.bx...)
 			fd.f.solve(v[i])
 		}
 		next, err := fd.project(v)
-		if err != nil || len(next) == 0 {
+		if err != nil {
 			break
 		}
-		list = next
-		worst = 0
-		for _, m := range list {
-			worst = max(worst, m.residual)
-		}
-		if worst < precise || worst < stale && worst > 0.3*before {
-			break
-		}
-		if worst > 0.1*before {
-			if err := fd.under(list); err != nil {
+		if len(next) == 0 { // the shift is a mode to the last digit
+			if _, err := fd.factor(fromReal[T](fd.at * (1 - 3*nudge))); err != nil {
 				return err
 			}
+			continue
 		}
-		before = worst
+		list, worst = next, residual(next)
 	}
 	if fd.rates != nil && worst < stale {
 		fd.clusterSlopes(list)
@@ -118,14 +128,39 @@ func (fd *finder[T]) polish(list []pair[T]) error {
 	return nil
 }
 
+// residual is the worst of a cluster.
+func residual[T ldl.Number](list []pair[T]) float64 {
+	worst := 0.0
+	for _, m := range list {
+		worst = max(worst, m.residual)
+	}
+	return worst
+}
+
+// served says whether the present factors are just below a cluster.
+func (fd *finder[T]) served(list []pair[T]) bool {
+	low := realPart(list[len(list)-1].n)
+	d := low - fd.at
+	return fd.ready && d > 0 && d < 2*unsure*low
+}
+
 // under factors just below the lowest of a cluster.
 func (fd *finder[T]) under(list []pair[T]) error {
 	low := list[len(list)-1].n
 	if !(realPart(low) > 0) {
 		return nil
 	}
-	_, err := fd.factor(low * fromReal[T](1-offset))
+	_, err := fd.factor(low - fromReal[T](fd.stepBelow(realPart(low), offset)))
 	return err
+}
+
+// stepBelow is a step down from N, relative to it, that stays above the modes which are not wanted.
+func (fd *finder[T]) stepBelow(n, share float64) float64 {
+	step := share * n
+	if gap := n - fd.low; gap > 0 {
+		step = min(step, 0.2*gap)
+	}
+	return step
 }
 
 // part projects the pencil once more on modes that agree to twin and may have been found one by one: each could be

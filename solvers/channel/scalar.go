@@ -3,6 +3,7 @@ package channel
 import (
 	"math"
 
+	"betaloom/solvers/internal/kernel"
 	"betaloom/solvers/internal/ldl"
 )
 
@@ -46,33 +47,15 @@ func conj[T ldl.Number](x T) T {
 }
 
 // bilinear is x'y.
-func bilinear[T ldl.Number](x, y []T) (sum T) {
-	for i, v := range x {
-		sum += v * y[i]
-	}
-	return sum
-}
+func bilinear[T ldl.Number](x, y []T) T { return kernel.Dot(x, y) }
 
 // inner is conj(x)'y.
-func inner[T ldl.Number](x, y []T) (sum T) {
-	if r, ok := any(x).([]float64); ok {
-		return fromReal[T](bilinear(r, any(y).([]float64)))
-	}
-	for i, v := range x {
-		sum += conj(v) * y[i]
-	}
-	return sum
-}
+func inner[T ldl.Number](x, y []T) T { return kernel.Inner(x, y) }
 
 func norm[T ldl.Number](x []T) float64 { return math.Sqrt(realPart(inner(x, x))) }
 
 // add adds c x to y.
-func add[T ldl.Number](y, x []T, c T) {
-	x = x[:len(y)]
-	for i := range y {
-		y[i] += c * x[i]
-	}
-}
+func add[T ldl.Number](y, x []T, c T) { kernel.Axpy(y, x[:len(y)], c) }
 
 func scale[T ldl.Number](x []T, c T) {
 	for i := range x {

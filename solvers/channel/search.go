@@ -12,6 +12,9 @@ import (
 // coarse is the estimated residual at which Arnoldi's vectors are handed on to be refined.
 const coarse = 1e-4
 
+// fine is that residual where the shift is so near the modes that few steps reach it.
+const fine = 1e-9
+
 // krylov is a run of Arnoldi's method on (A + shift B)^-1 B, whose eigenvalue
 // m stands for N = shift - 1/m. The modes found before are deflated, in the bilinear form of B.
 type krylov[T ldl.Number] struct {
@@ -29,7 +32,11 @@ func (fd *finder[T]) search(shift float64) error {
 		return err
 	}
 	k := &krylov[T]{fd: fd, shift: pr.at, work: make([]T, fd.s.t.unknowns)}
-	found, err := k.run()
+	need := max(1, fd.want-len(fd.found))
+	if fd.total < 0 && fd.want == 0 {
+		need = 20
+	}
+	found, err := k.run(need, coarse)
 	if err != nil {
 		return err
 	}
@@ -67,12 +74,8 @@ func (k *krylov[T]) apply(x []T) {
 	}
 }
 
-// run extends the basis until enough modes show.
-func (k *krylov[T]) run() ([][]T, error) {
-	need := max(1, k.fd.want-len(k.fd.found))
-	if k.fd.total < 0 && k.fd.want == 0 {
-		need = 20
-	}
+// run extends the basis until the need modes nearest the shift show, to an estimated residual.
+func (k *krylov[T]) run(need int, enough float64) ([][]T, error) {
 	limit := min(len(k.work), 60+8*need)
 	k.basis = [][]T{k.start()}
 	for j := range limit {
@@ -80,8 +83,8 @@ func (k *krylov[T]) run() ([][]T, error) {
 			return nil, err
 		}
 		full := k.extend()
-		if done := full || j+1 == limit; done || j >= 9 && j%6 == 3 {
-			v, settled, err := k.look(need)
+		if done := full || j+1 == limit; done || j >= 9 && j%6 == 3 || need < 4 && j >= 4 && j%2 == 0 {
+			v, settled, err := k.look(need, enough)
 			if err != nil || settled || done {
 				return v, err
 			}
@@ -123,7 +126,7 @@ type candidate struct {
 }
 
 // look gives the settled vectors of wanted modes, and whether the need nearest ones are all settled.
-func (k *krylov[T]) look(need int) ([][]T, bool, error) {
+func (k *krylov[T]) look(need int, enough float64) ([][]T, bool, error) {
 	m := len(k.h)
 	h := make([][]complex128, m)
 	for i := range h {
@@ -143,7 +146,7 @@ func (k *krylov[T]) look(need int) ([][]T, bool, error) {
 		if cmplx.IsNaN(n) || !(real(n) > k.fd.low) {
 			continue
 		}
-		list = append(list, candidate{n, i, last*cmplx.Abs(y[m-1][i]) < coarse*cmplx.Abs(mu)})
+		list = append(list, candidate{n, i, last*cmplx.Abs(y[m-1][i]) < enough*cmplx.Abs(mu)})
 	}
 	near := func(c candidate) float64 { return cmplx.Abs(c.n - complex(k.shift, 0)) }
 	sort.Slice(list, func(i, j int) bool { return near(list[i]) < near(list[j]) })

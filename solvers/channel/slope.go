@@ -1,6 +1,8 @@
 package channel
 
 import (
+	"math"
+
 	"betaloom/solvers/internal/ldl"
 )
 
@@ -73,8 +75,8 @@ func dotReal[T ldl.Number](x []T, y []float64) (sum T) {
 
 // Slopes: limits of the iteration for a vector's derivative.
 const (
-	slopeRounds  = 60
-	slopePrecise = 1e-12 // relative residual at which to stop
+	slopeRounds  = 40
+	slopePrecise = 1e-11 // relative residual at which to stop
 )
 
 // slopeRates is what vectors' derivatives need to know of the pencil.
@@ -142,20 +144,7 @@ func (fd *finder[T]) constrained(list []pair[T], i int, r []T) []T {
 		share[j] = bilinear(list[j].x, r) / bilinear(list[j].x, list[j].bx)
 		add(r, list[j].bx, -share[j])
 	}
-	res, step := append([]T{}, r...), make([]T, len(r))
-	before := fd.weighed(r)
-	for round, last := 0, before; round < slopeRounds && last > slopePrecise*before; round++ {
-		copy(step, res)
-		fd.f.solve(step)
-		fd.expel(list, step)
-		add(y, step, 1)
-		fd.residual(res, r, y, m.n)
-		now := fd.weighed(res)
-		if now > 0.7*last && round > 2 {
-			break
-		}
-		last = now
-	}
+	fd.descend(list, m.n, y, r)
 	for j := range list {
 		if d := m.n - list[j].n; j != i && ldl.Abs1(d) > 1e-13*ldl.Abs1(m.n) {
 			add(y, list[j].x, share[j]/d)
@@ -164,18 +153,60 @@ func (fd *finder[T]) constrained(list []pair[T], i int, r []T) []T {
 	return y
 }
 
+// descend adds to y the solution of F(n) y = r without the cluster's modes; r becomes the residual. The factors at the
+// shift lead the way, and each step is the best along it and the ones before (generalised conjugate residuals: Eisenstat, Elman and
+// Schultz, SIAM J. Numer. Anal. 20 (1983) 345).
+func (fd *finder[T]) descend(list []pair[T], n T, y, r []T) {
+	var steps, images [][]T
+	before := fd.weighed(r)
+	for last := before; len(steps) < slopeRounds && last > slopePrecise*before; {
+		step, image := append([]T{}, r...), make([]T, len(r))
+		fd.f.solve(step)
+		fd.expel(list, step)
+		fd.s.multiply(image, step, 1, n)
+		for i, w := range images {
+			c := fd.weighedInner(w, image)
+			add(image, w, -c)
+			add(step, steps[i], -c)
+		}
+		size := math.Sqrt(realPart(fd.weighedInner(image, image)))
+		if !(size > 0) || math.IsInf(size, 0) {
+			return
+		}
+		scale(image, fromReal[T](1/size))
+		scale(step, fromReal[T](1/size))
+		c := fd.weighedInner(image, r)
+		add(y, step, c)
+		add(r, image, -c)
+		steps, images = append(steps, step), append(images, image)
+		now := fd.weighed(r)
+		if now > 0.9*last {
+			return
+		}
+		last = now
+	}
+}
+
+// weighedInner is the inner product of the norm weighed.
+func (fd *finder[T]) weighedInner(a, b []T) (sum T) {
+	if x, ok := any(a).([]float64); ok {
+		y, _ := any(b).([]float64)
+		real := 0.0
+		for i, w := range fd.s.weight {
+			real += x[i] * y[i] / w
+		}
+		return fromReal[T](real)
+	}
+	for i, v := range a {
+		sum += conj(v) * b[i] * fromReal[T](1/fd.s.weight[i])
+	}
+	return sum
+}
+
 // expel takes the cluster's modes out of y.
 func (fd *finder[T]) expel(list []pair[T], y []T) {
 	for j := range list {
 		add(y, list[j].x, -bilinear(list[j].bx, y)/bilinear(list[j].bx, list[j].x))
-	}
-}
-
-// residual sets res to r - F(n) y.
-func (fd *finder[T]) residual(res, r, y []T, n T) {
-	fd.s.multiply(res, y, 1, n)
-	for i, v := range r {
-		res[i] = v - res[i]
 	}
 }
 

@@ -70,6 +70,8 @@ type point struct {
 	want    int
 	bounds  section.Bounds
 	size    float64 // widest cell, m
+	smooth  bool    // no corner: fields without singularities
+	answer  []refined
 }
 
 // Modes implements solvers.Problem.
@@ -95,5 +97,6 @@ func (g *Guide) place(ctx context.Context, q solvers.Q, want int) (*point, error
 		return nil, err
 	}
 	pt.size = pt.cellSize()
-	return pt, nil
+	pt.smooth, err = pt.cornerless()
+	return pt, err
 }

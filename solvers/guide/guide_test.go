@@ -67,15 +67,41 @@ func at(text string, accuracy string) string {
 	return strings.TrimSuffix(text, "\n") + "\n" + accuracy + "\n"
 }
 
+// The strip of package channel's table. The values are the converged ones of a separate prototype of the same equation with
+// finer meshes, from the design of this program: neff to 1e-12, ng to 1e-9, GVD to 1e-4 ps^2/km.
 func TestStrip(t *testing.T) {
-	g := guide(t, at(strip, "accuracy: {neff: 1e-8}"))
-	modes, count := solve(t, g, solvers.Q{frequency(1.55 * um), 0.5 * um, 0.22 * um, math.Pi / 2}, 4)
-	fmt.Println(count)
-	for _, m := range modes {
-		fmt.Printf("%+v\n", m.Family)
-		fmt.Printf("neff %.12f (%.1e) ng %.9f (%.1e) gvd %.5f (%.1e) b3 %g (%g) dneff %v dng %v ex %.3f aeff %g conf %v %s\n", m.Neff, m.NeffErr, m.Ng, m.NgErr, m.GVD*1e27, m.GVDErr*1e27, m.Beta3, m.Beta3Err, m.DNeff, m.DNg, m.ExShare, m.Aeff, m.Confinement, m.Symmetry)
+	want := map[string][3]float64{
+		"TE00": {2.447288247925, 4.055365545, -1832.7057e-27},
+		"TM00": {1.771707850249, 3.652897530, 21495.69e-27},
 	}
-	fmt.Println(modes[0].State.(*start).bounds, modes[0].State.(*start).level)
+	for _, accuracy := range []float64{1e-4, 1e-6, 1e-8} {
+		t.Run(fmt.Sprint(accuracy), func(t *testing.T) {
+			g := guide(t, at(strip, fmt.Sprintf("accuracy: {neff: %g}", accuracy)))
+			modes, count := solve(t, g, solvers.Q{frequency(1.55 * um), 0.5 * um, 0.22 * um, math.Pi / 2}, 2)
+			if count.N != 3 || count.Proof != "inertia" || len(modes) != 2 {
+				t.Fatalf("%d modes, count %v", len(modes), count)
+			}
+			for _, m := range modes {
+				w, ok := want[m.Family]
+				if !ok {
+					t.Fatalf("a mode named %s", m.Family)
+				}
+				within(t, m.Family+" neff", m.Neff, w[0], m.NeffErr+2e-12)
+				within(t, m.Family+" ng", m.Ng, w[1], m.NgErr+1e-9)
+				within(t, m.Family+" GVD", m.GVD, w[2], m.GVDErr+1e-31*max(1, math.Abs(w[2])*1e24))
+				if !(m.NeffErr <= accuracy) {
+					t.Errorf("%s: bound %g", m.Family, m.NeffErr)
+				}
+			}
+		})
+	}
+}
+
+func within(t *testing.T, what string, got, want, bound float64) {
+	t.Helper()
+	if e := math.Abs(got - want); !(e <= bound) {
+		t.Errorf("%s: %.13g, want %.13g: off by %.1e, bound %.1e", what, got, want, e, bound)
+	}
 }
 
 const nitride = `

@@ -5,24 +5,63 @@ import (
 	"betaloom/solvers/section"
 )
 
-// level is one fineness of the mesh: layers of cells toward each corner and the order of the widest cells.
-type level struct{ layers, order int }
+// fineness is layers of cells toward each corner and the order of the widest cells.
+type fineness struct{ layers, order int }
 
-// levels are the finenesses in use, from the coarsest.
+// level is a mesh whose modes are the answer and a coarser one to compare them with. Its order is lower by two: a field that is even or
+// odd about the middle of a cell gains nothing from every other order.
+type level struct{ coarse, fine fineness }
+
+// levels are those in use, from the coarsest.
 func levels() []level {
-	return []level{{1, 3}, {1, 4}, {2, 5}, {3, 6}, {4, 7}, {5, 9}, {6, 11}, {7, 13}}
+	return []level{
+		{fineness{1, 2}, fineness{1, 4}},
+		{fineness{1, 3}, fineness{2, 5}},
+		{fineness{2, 4}, fineness{3, 6}},
+		{fineness{3, 5}, fineness{4, 7}},
+		{fineness{4, 6}, fineness{5, 8}},
+		{fineness{5, 7}, fineness{6, 9}},
+		{fineness{6, 9}, fineness{7, 11}},
+		{fineness{7, 11}, fineness{8, 13}},
+	}
+}
+
+// first is the level to begin with.
+func (p *point) first() int {
+	switch a := p.accuracy.Neff; {
+	case a >= 1e-4:
+		return 0
+	case a >= 1e-7:
+		return 1
+	}
+	return 2
 }
 
 // most bounds the unknowns of one discretisation.
 const most = 90000
 
-// mesh makes the mesh of a class at a level.
-func (p *point) mesh(c *class, at int, b *section.Bounds) (*section.Mesh, error) {
-	l := levels()[at]
+// mesh makes a mesh of a class.
+func (p *point) mesh(c *class, l fineness, b *section.Bounds) (*section.Mesh, error) {
 	return p.outline.Mesh(section.Options{
-		Bounds: *b, Order: l.order, MinOrder: min(3, l.order-1), CornerLayers: l.layers, Size: p.size,
+		Bounds: *b, Order: l.order, MinOrder: 2, CornerLayers: l.layers, Size: p.size,
 		HalfX: c.halfX, HalfY: c.halfY, WallX: c.wallX, WallY: c.wallY, Outer: section.Electric,
 	})
+}
+
+// cornerless says whether the section has no corner: its mesh is the same however corners are graded. Only metal walls
+// can make such a section of layers with strips, unless strips and fill are the same.
+func (p *point) cornerless() (bool, error) {
+	if _, _, _, _, walls := p.outline.Corners(); walls && p.outline.SideWalls == nil {
+		return false, nil
+	}
+	b := p.guess()
+	p.level(&b)
+	plain, err := p.mesh(&p.classes[0], fineness{0, 2}, &b)
+	if err != nil {
+		return false, err
+	}
+	graded, err := p.mesh(&p.classes[0], fineness{1, 2}, &b)
+	return err == nil && len(plain.OrderX) == len(graded.OrderX) && len(plain.OrderY) == len(graded.OrderY), err
 }
 
 // shelf keeps the topologies that were used last.

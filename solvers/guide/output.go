@@ -16,11 +16,8 @@ func (p *point) modes(answer []refined, at int) []solvers.Mode {
 	for i := range p.classes {
 		next.classes[p.classes[i].label] = p.classes[i].start
 	}
-	if at > 1 && p.generous(answer) {
-		next.level--
-		for label, w := range next.classes {
-			next.classes[label] = warm{vectors{}, w[0]}
-		}
+	if at > 0 && p.generous(answer) {
+		next.level, next.classes = at-1, nil
 	}
 	out := make([]solvers.Mode, len(answer))
 	for i := range answer {

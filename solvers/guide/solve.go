@@ -23,8 +23,8 @@ type start struct {
 	classes map[string]warm // by label
 }
 
-// warm is the vectors of a class at the coarse and the fine level.
-type warm [2]vectors
+// warm is the vectors of a class on a level's meshes.
+type warm [3]vectors
 
 type vectors struct {
 	mesh *section.Mesh
@@ -71,17 +71,14 @@ type classModes struct {
 // solve finds the modes of a point.
 func (p *point) solve(s *start) ([]solvers.Mode, solvers.Count, error) {
 	if s == nil {
-		s = &start{level: 1, bounds: p.guess()}
+		s = &start{level: p.first(), bounds: p.guess()}
 	}
 	for i := range p.classes {
 		p.classes[i].start = s.classes[p.classes[i].label]
 	}
-	if err := p.census(); err != nil {
-		return nil, solvers.Count{}, err
-	}
 	p.bounds = s.bounds
 	p.level(&p.bounds)
-	coarse, err := p.settle(s.level - 1)
+	coarse, at, err := p.begin(s.level)
 	if err != nil {
 		return nil, solvers.Count{}, err
 	}
@@ -89,7 +86,7 @@ func (p *point) solve(s *start) ([]solvers.Mode, solvers.Count, error) {
 	if len(coarse) == 0 {
 		return nil, count, nil
 	}
-	answer, at, err := p.climb(coarse, s.level)
+	answer, at, err := p.climb(coarse, at)
 	if err != nil {
 		return nil, solvers.Count{}, err
 	}
@@ -111,11 +108,36 @@ func (p *point) count() (c solvers.Count) {
 	return c
 }
 
-// censusLevel is the level at which modes are counted, with walls so far away that all are seen.
-const censusLevel = 1
+// begin counts the modes and solves the coarse mesh of a level, or of a finer one where the first is too coarse to show them all.
+func (p *point) begin(at int) ([]classModes, int, error) {
+	const tries = 3
+	for try := range tries {
+		l := levels()[at]
+		if err := p.census(fineness{max(l.coarse.layers, 1), max(l.coarse.order, 4)}); err != nil {
+			return nil, 0, err
+		}
+		coarse, err := p.settle(l.coarse, try+1 == tries)
+		if !errors.Is(err, errHidden) || at+1 == len(levels()) {
+			return coarse, at, err
+		}
+		at++
+		p.forget()
+	}
+	return nil, 0, errHidden
+}
 
-// census counts the guided modes of every class.
-func (p *point) census() error {
+// errHidden says that modes which were counted are not among those of a coarse mesh.
+var errHidden = errors.New("fewer modes than were counted")
+
+// forget drops the vectors of the neighbour.
+func (p *point) forget() {
+	for i := range p.classes {
+		p.classes[i].start = warm{}
+	}
+}
+
+// census counts the guided modes of every class, with walls so far away that all are seen.
+func (p *point) census(l fineness) error {
 	for i := range p.classes {
 		c := &p.classes[i]
 		if c.low >= p.densest() {
@@ -123,7 +145,7 @@ func (p *point) census() error {
 		}
 		far := p.farthest(c)
 		p.level(&far)
-		pencil, _, err := p.assemble(c, censusLevel, &far)
+		pencil, _, err := p.assemble(c, l, &far)
 		if err != nil {
 			return err
 		}
@@ -137,8 +159,8 @@ func (p *point) census() error {
 	return nil
 }
 
-func (p *point) assemble(c *class, at int, b *section.Bounds) (*channel.Pencil, *section.Mesh, error) {
-	m, err := p.mesh(c, at, b)
+func (p *point) assemble(c *class, l fineness, b *section.Bounds) (*channel.Pencil, *section.Mesh, error) {
+	m, err := p.mesh(c, l, b)
 	if err != nil {
 		return nil, nil, err
 	}
@@ -156,10 +178,17 @@ func (p *point) assemble(c *class, at int, b *section.Bounds) (*channel.Pencil, 
 // errLarge says that a level has more unknowns than are taken on.
 var errLarge = errors.New("the section is too large for a finer mesh")
 
-// find solves one class at a level: at most want modes.
-func (p *point) find(c *class, at, want, stage int, guess []float64) (classModes, error) {
+// The meshes of a level, by which a class keeps its vectors.
+const (
+	onCoarse = iota
+	onFine
+	onThird
+)
+
+// find solves one class on a mesh: at most want modes.
+func (p *point) find(c *class, l fineness, want, stage int, guess []float64) (classModes, error) {
 	out := classModes{class: c}
-	pencil, mesh, err := p.assemble(c, at, &p.bounds)
+	pencil, mesh, err := p.assemble(c, l, &p.bounds)
 	if err != nil {
 		return out, err
 	}
@@ -192,11 +221,12 @@ func (p *point) find(c *class, at, want, stage int, guess []float64) (classModes
 // attempts bounds how often walls are moved.
 const attempts = 16
 
-// settle solves the coarse level and moves the walls until they are far enough for the modes that will be reported.
-func (p *point) settle(at int) ([]classModes, error) {
+// settle solves the coarse mesh and moves the walls until they are far enough for the modes that will be reported. Modes
+// that are not found even so are closer to their cut-off than is looked for if this is the last mesh to be tried.
+func (p *point) settle(l fineness, last bool) ([]classModes, error) {
 	guesses := map[string][]float64{}
 	for range attempts {
-		sets, err := p.all(at, guesses)
+		sets, err := p.all(l, guesses)
 		if err != nil {
 			return nil, err
 		}
@@ -207,6 +237,9 @@ func (p *point) settle(at int) ([]classModes, error) {
 		if p.hidden(sets, chosen) || p.widen(&p.bounds, chosen) {
 			continue
 		}
+		if p.missing(sets) && !last {
+			return nil, errHidden
+		}
 		p.drop(sets)
 		return chosen, nil
 	}
@@ -214,13 +247,13 @@ func (p *point) settle(at int) ([]classModes, error) {
 }
 
 // all solves every class that has modes.
-func (p *point) all(at int, guesses map[string][]float64) (sets []classModes, err error) {
+func (p *point) all(l fineness, guesses map[string][]float64) (sets []classModes, err error) {
 	for i := range p.classes {
 		c := &p.classes[i]
 		if c.census == 0 {
 			continue
 		}
-		set, err := p.find(c, at, min(p.want, c.census), 0, guesses[c.label])
+		set, err := p.find(c, l, min(p.want, c.census), onCoarse, guesses[c.label])
 		if err != nil {
 			return nil, err
 		}
@@ -286,6 +319,16 @@ func (p *point) hidden(sets, chosen []classModes) bool {
 	return moved
 }
 
+// missing says whether a class has fewer modes than were counted.
+func (p *point) missing(sets []classModes) bool {
+	for _, s := range sets {
+		if len(s.modes) < min(p.want, s.class.census) {
+			return true
+		}
+	}
+	return false
+}
+
 // drop takes modes that were counted and are nowhere to be found, hence closer to their cut-off than is looked for,
 // off the count.
 func (p *point) drop(sets []classModes) {
@@ -296,43 +339,70 @@ func (p *point) drop(sets []classModes) {
 	}
 }
 
-// refined is a chosen mode at two levels.
+// refined is a chosen mode on the two meshes of a level, or on three.
 type refined struct {
 	fine, coarse *solved
+	third        *solved // nil but for fields without singularities
 	bound        bound
 }
 
-// climb solves finer and finer levels until the difference of the last two is small enough.
+// climb solves finer and finer levels until the difference of a level's two meshes is small enough.
 func (p *point) climb(coarse []classModes, at int) ([]refined, int, error) {
 	var answer []refined
-	for ; ; at++ {
-		fine, err := p.finer(coarse, at)
+	solved := at
+	for {
+		fine, err := p.again(coarse, levels()[at].fine, onFine)
 		if errors.Is(err, errLarge) && answer != nil {
-			return answer, at - 1, nil
+			return answer, solved, nil
 		}
 		if err != nil {
 			return nil, 0, err
 		}
-		answer = p.pairUp(fine, coarse)
-		if p.reached(answer) || at+1 >= len(levels()) {
+		third, err := p.coarser(fine, levels()[at].coarse)
+		if err != nil {
+			return nil, 0, err
+		}
+		answer = p.pairUp(fine, coarse, third)
+		short := p.short(answer)
+		if short <= 1 || at+1 == len(levels()) {
 			return answer, at, nil
 		}
-		coarse = fine
-		for i := range p.classes {
-			p.classes[i].start[0], p.classes[i].start[1] = p.classes[i].start[1], vectors{}
+		solved = at
+		at = min(at+max(1, int(math.Round(math.Log(short)/math.Log(step)))), len(levels())-1)
+		p.forget()
+		if coarse, err = p.again(fine, levels()[at].coarse, onCoarse); errors.Is(err, errLarge) {
+			return answer, solved, nil
+		} else if err != nil {
+			return nil, 0, err
 		}
 	}
 }
 
-// finer solves the classes of modes at a level.
-func (p *point) finer(sets []classModes, at int) (out []classModes, err error) {
+// coarser solves the modes on a third mesh, coarser than the coarse one, where there are no corners: such fields converge
+// so fast that the difference of two meshes says little of the finer one's error, but for the rate.
+func (p *point) coarser(sets []classModes, l fineness) ([]classModes, error) {
+	if !p.smooth || l.order < 4 {
+		return nil, nil
+	}
+	third, err := p.again(sets, fineness{l.layers, l.order - 2}, onThird)
+	if err != nil && p.ctx.Err() == nil {
+		return nil, nil // too coarse to show them all
+	}
+	return third, err
+}
+
+// step is by how much a level is better than the one before, as a rule.
+const step = 15
+
+// again solves the classes of modes on another mesh.
+func (p *point) again(sets []classModes, l fineness, stage int) (out []classModes, err error) {
 	for _, s := range sets {
-		set, err := p.find(s.class, at, len(s.modes), 1, indices(s.modes))
+		set, err := p.find(s.class, l, len(s.modes), stage, indices(s.modes))
 		if err != nil {
 			return nil, err
 		}
 		if len(set.modes) < len(s.modes) {
-			return nil, &solvers.ConvergenceError{Where: "modes " + s.class.label, Err: fmt.Errorf("%d of %d on a finer mesh", len(set.modes), len(s.modes))}
+			return nil, &solvers.ConvergenceError{Where: "modes " + s.class.label, Err: fmt.Errorf("%d of %d on another mesh", len(set.modes), len(s.modes))}
 		}
 		out = append(out, set)
 	}
@@ -347,25 +417,41 @@ func indices(modes []solved) (n []float64) {
 	return n
 }
 
-// pairUp finds for each fine mode the coarse one that it is: nearest in index and group index.
-func (p *point) pairUp(fine, coarse []classModes) (out []refined) {
+// pairUp finds for each fine mode the coarse one that it is, and where there is a third mesh the one there.
+func (p *point) pairUp(fine, coarse, third []classModes) (out []refined) {
 	for i := range fine {
-		taken := make([]bool, len(coarse[i].modes))
+		partner := partners(fine[i].modes, coarse[i].modes)
+		var other []*solved
+		if third != nil {
+			other = partners(fine[i].modes, third[i].modes)
+		}
 		for j := range fine[i].modes {
-			f := &fine[i].modes[j]
-			best, at := math.Inf(1), -1
-			for n := range coarse[i].modes {
-				c := &coarse[i].modes[n]
-				if d := cmplx.Abs(f.beta.V-c.beta.V)/p.k + 0.01*math.Abs(f.ng()-c.ng()); !taken[n] && d < best {
-					best, at = d, n
-				}
+			r := refined{fine: &fine[i].modes[j], coarse: partner[j]}
+			if other != nil {
+				r.third = other[j]
 			}
-			taken[at] = true
-			r := refined{fine: f, coarse: &coarse[i].modes[at]}
 			r.bound = p.bound(&r)
 			out = append(out, r)
 		}
 	}
 	sort.SliceStable(out, func(i, j int) bool { return out[i].fine.neff() > out[j].fine.neff() })
+	return out
+}
+
+// partners gives for each mode that of another mesh which is nearest in index and group index.
+func partners(modes, others []solved) []*solved {
+	out := make([]*solved, len(modes))
+	taken := make([]bool, len(others))
+	for j := range modes {
+		f := &modes[j]
+		best, at := math.Inf(1), -1
+		for n := range others {
+			c := &others[n]
+			if d := cmplx.Abs(f.beta.V-c.beta.V)/f.k + 0.01*math.Abs(f.ng()-c.ng()); !taken[n] && d < best {
+				best, at = d, n
+			}
+		}
+		taken[at], out[j] = true, &others[at]
+	}
 	return out
 }

@@ -19,9 +19,9 @@ func (p *plan) open() sides {
 // They move with the outermost wall ends.
 func (p plan) domain(bounds Bounds) (plan, error) {
 	open := p.open()
-	left, right, bottom, top, ok := p.corners()
+	left, right, _, _, ok := p.corners()
+	bottom, top := p.interfaces()
 	if !ok {
-		bottom, top = p.interfaces()
 		left, right = Length{}, Length{}
 		if p.left != nil {
 			left, right = *p.left, *p.left

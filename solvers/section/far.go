@@ -23,7 +23,7 @@ func (o *Outline) Far() slab.Stack {
 }
 
 // Corners is the box of all ends of walls, in metres; ok is false for a
-// section without walls. Bounds count from it.
+// section without walls.
 func (o *Outline) Corners() (left, right, bottom, top float64, ok bool) {
 	l, r, b, t, ok := o.plan.corners()
 	return l.V, r.V, b.V, t.V, ok

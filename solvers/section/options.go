@@ -7,10 +7,10 @@ import (
 	"betaloom/solvers"
 )
 
-// Bounds are the distances of the computational walls beyond the outermost
-// wall ends of the section, in metres, above zero. A side that is closed by metal or
+// Bounds are the distances of the computational walls, in metres, above zero: Left and Right beyond the outermost
+// wall ends of the section, Bottom and Top beyond its outermost interfaces. A side that is closed by metal or
 // by a mirror plane has none of its own. Of a section without strips, Left and Right
-// count from x = 0, Bottom and Top from the outermost interfaces.
+// count from x = 0.
 type Bounds struct{ Left, Right, Bottom, Top float64 }
 
 // Options says how fine a mesh is. A cell of width w has the order

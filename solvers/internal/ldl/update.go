@@ -1,28 +1,55 @@
 package ldl
 
-// couple turns the rows below the leading block into L21 and leaves W = L21 D
-// in work; it gives the largest entry of L21.
+import "betaloom/solvers/internal/kernel"
+
+// width is the number of columns of a packed panel: two vectors of the widest processors.
+const width = 16
+
+// couple turns the rows below the leading block into L21 and leaves W = L21 D in work,
+// transposed in panels: the rows j to j+width of W are S rows of width numbers from j S on.
+// It gives the largest entry of L21.
 func (f *Front[T]) couple(work []T) (growth float64) {
-	s := f.S
-	for i := f.S; i < f.N; i++ {
-		w, row := work[(i-s)*s:(i-s+1)*s], f.Panel[i*s:(i+1)*s]
-		for j, p := range f.Perm {
-			w[j] = row[p]
-		}
-	}
-	r := f.N - s
-	i := 0
-	for ; i+4 <= r; i += 4 {
-		f.forward4(work[i*s : (i+4)*s])
-	}
-	for ; i < r; i++ {
-		f.forward(work[i*s : (i+1)*s])
-	}
+	s, r := f.S, f.N-f.S
 	d := f.inverse(work[r*s:])
-	for i := range r {
-		growth = max(growth, f.unscale(f.Panel[(s+i)*s:(s+i+1)*s], work[i*s:(i+1)*s], d))
+	for j := 0; j < r; j += width {
+		n := min(width, r-j)
+		w, rows := work[j*s:(j+n)*s], f.Panel[(s+j)*s:(s+j+n)*s]
+		f.pack(w, rows, n)
+		kernel.Solve(view(f.Panel, s), view(w, n), s, n)
+		growth = max(growth, f.unscale(rows, w, d, n))
 	}
 	return growth
+}
+
+// pack turns n rows into columns with the unknowns in the order of the pivots. It marks the places
+// that are done by the sign of Perm while it goes round the cycles.
+func (f *Front[T]) pack(w, rows []T, n int) {
+	kernel.Turn(view(w, n), view(rows, f.S), nil, f.S, n)
+	var kept [width]T
+	for first, p := range f.Perm {
+		if int(p) == first || p < 0 {
+			continue
+		}
+		copy(kept[:n], w[first*n:])
+		to := first
+		for from := int(p); from != first; from = int(f.Perm[to]) {
+			copy(w[to*n:(to+1)*n], w[from*n:])
+			f.Perm[to] = ^f.Perm[to]
+			to = from
+		}
+		copy(w[to*n:(to+1)*n], kept[:])
+		f.Perm[to] = ^f.Perm[to]
+	}
+	for i, p := range f.Perm {
+		f.Perm[i] = max(p, ^p)
+	}
+}
+
+// view is a matrix of rows, across its transpose.
+func view[T Number](x []T, row int) kernel.View[T] { return kernel.View[T]{Data: x, Row: row} }
+
+func across[T Number](x []T, row int) kernel.View[T] {
+	return kernel.View[T]{Data: x, Row: 1, Step: row}
 }
 
 // inverse gives the diagonals of D^-1, then its off-diagonals, at the places of D's.
@@ -42,112 +69,28 @@ func (f *Front[T]) inverse(d []T) []T {
 	return d
 }
 
-// forward solves L11 x = w in place.
-func (f *Front[T]) forward(w []T) {
+// unscale puts D^-1 w, n columns, transposed into rows and gives the largest entry.
+func (f *Front[T]) unscale(rows, w, d []T, n int) (top float64) {
 	s := f.S
-	for j := 1; j < s; j++ {
-		l := f.Panel[j*s : j*s+j]
-		x := w[:len(l)]
-		var sum T
-		for t := range l {
-			sum += l[t] * x[t]
+	kernel.Turn(view(rows, s), view(w, n), d, n, s)
+	for k, c := range d[s : 2*s] {
+		if c == 0 {
+			continue
 		}
-		w[j] -= sum
-	}
-}
-
-// forward4 is forward on four rows at once.
-func (f *Front[T]) forward4(w []T) {
-	s := f.S
-	w0, w1, w2, w3 := w[:s], w[s:2*s], w[2*s:3*s], w[3*s:4*s]
-	for j := 1; j < s; j++ {
-		l := f.Panel[j*s : j*s+j]
-		x0, x1, x2, x3 := w0[:len(l)], w1[:len(l)], w2[:len(l)], w3[:len(l)]
-		var s0, s1, s2, s3 T
-		for t, v := range l {
-			s0 += v * x0[t]
-			s1 += v * x1[t]
-			s2 += v * x2[t]
-			s3 += v * x3[t]
-		}
-		w0[j] -= s0
-		w1[j] -= s1
-		w2[j] -= s2
-		w3[j] -= s3
-	}
-}
-
-// unscale puts w D^-1 into dst and gives the largest entry.
-func (f *Front[T]) unscale(dst, w, d []T) (top float64) {
-	dst = dst[:len(w)]
-	own, off := d[:len(w)], d[f.S:][:len(w)]
-	for k, v := range w {
-		dst[k] = v * own[k]
-	}
-	for k, c := range off {
-		if c != 0 {
-			dst[k] += w[k+1] * c
-			dst[k+1] += w[k] * c
+		for i := range n {
+			rows[i*s+k] += w[(k+1)*n+i] * c
+			rows[i*s+k+1] += w[k*n+i] * c
 		}
 	}
-	for _, v := range dst {
-		top = max(top, Abs1(v))
-	}
-	return top
+	return kernel.Peak(rows)
 }
 
-// update takes l w' off the lower triangle of the r x r matrix c; l and w have
-// r rows of s. Blocks of four rows and two columns share their loads; they
-// may reach above the diagonal, where nothing is kept.
-func update[T Number](c, l, w []T, r, s int) {
-	i := 0
-	for ; i+4 <= r; i += 4 {
-		l0, l1, l2, l3 := l[i*s:(i+1)*s], l[(i+1)*s:(i+2)*s], l[(i+2)*s:(i+3)*s], l[(i+3)*s:(i+4)*s]
-		for j := 0; j < i+4; j += 2 {
-			block42(c[i*r+j:], r, l0, l1, l2, l3, w[j*s:(j+1)*s], w[(j+1)*s:(j+2)*s])
-		}
+// update takes L21 W' off the lower triangle of the rest, panel by panel of columns. The
+// blocks on the diagonal reach above it, where nothing is kept.
+func (f *Front[T]) update(rest, work []T) {
+	s, r := f.S, f.N-f.S
+	for j := 0; j < r; j += width {
+		n := min(width, r-j)
+		kernel.Sub(view(rest[j*r+j:], r), view(f.Panel[(s+j)*s:], s), view(work[j*s:], n), r-j, n, s)
 	}
-	for ; i < r; i++ {
-		row := l[i*s : (i+1)*s]
-		for j := 0; j <= i; j++ {
-			c[i*r+j] -= dot(row, w[j*s:(j+1)*s])
-		}
-	}
-}
-
-func dot[T Number](a, b []T) (sum T) {
-	b = b[:len(a)]
-	for t := range a {
-		sum += a[t] * b[t]
-	}
-	return sum
-}
-
-func block42[T Number](c []T, r int, l0, l1, l2, l3, u, v []T) {
-	n := len(u)
-	l0, l1, l2, l3, v = l0[:n], l1[:n], l2[:n], l3[:n], v[:n]
-	var a0, a1, a2, a3, b0, b1, b2, b3 T
-	for t := range n {
-		x, y := u[t], v[t]
-		p := l0[t]
-		a0 += p * x
-		b0 += p * y
-		p = l1[t]
-		a1 += p * x
-		b1 += p * y
-		p = l2[t]
-		a2 += p * x
-		b2 += p * y
-		p = l3[t]
-		a3 += p * x
-		b3 += p * y
-	}
-	c[0] -= a0
-	c[1] -= b0
-	c[r] -= a1
-	c[r+1] -= b1
-	c[2*r] -= a2
-	c[2*r+1] -= b2
-	c[3*r] -= a3
-	c[3*r+1] -= b3
 }

@@ -1,0 +1,269 @@
+#include "textflag.h"
+#include "vectors512_amd64.h"
+
+// Here A is L and both B and C are X: R9 = R8. The first rows, which are short, go
+// one by one until whole blocks are left.
+//	AX  the block's rows of X     R10 the block's rows of L
+//	R12 the number of rows done   R13 the panel of X
+//	R14 rows left
+
+#define START \
+	MOVQ R10, SI; \
+	LEAQ (R10)(R11*4), DI; \
+	MOVQ R13, DX; \
+	MOVQ R12, CX
+
+// TAKE takes A times the rows U, V off P, Q.
+#define TAKE(A, T, U, V, P, Q) \
+	VBROADCASTSD A, T; \
+	VFNMADD231PD U, T, P; \
+	VFNMADD231PD V, T, Q
+
+// func solve512(l *float64, row int, x *float64, ldx, m, n int)
+TEXT ·solve512(SB), NOSPLIT, $0-48
+	MOVQ row+8(FP), R11
+	SHLQ $3, R11
+	LEAQ (R11)(R11*2), BX
+	MOVQ x+16(FP), R13
+	MOVQ ldx+24(FP), R8
+	SHLQ $3, R8
+	MOVQ R8, R9
+	MOVQ n+40(FP), R15
+
+panel:
+	MASKS
+	MOVQ R13, AX
+	MOVQ l+0(FP), R10
+	MOVQ m+32(FP), R14
+	XORQ R12, R12
+
+head:
+	TESTQ $7, R14
+	JZ   body
+	TESTQ R12, R12
+	JZ   headnext
+	MOVQ AX, SI
+	LOAD2(Z16, Z17)
+	START
+
+headk:
+	B2
+	FNMA2((SI), Z2, Z16, Z17)
+	ADDQ $8, SI
+	DECQ CX
+	JNZ  headk
+	MOVQ AX, SI
+	STORE2(Z16, Z17)
+
+headnext:
+	ADDQ R8, AX
+	ADDQ R11, R10
+	INCQ R12
+	DECQ R14
+	JMP  head
+
+body:
+	TESTQ R14, R14
+	JZ   next
+	MOVQ AX, SI
+	LOAD2(Z16, Z17)
+	LOAD2(Z18, Z19)
+	LOAD2(Z20, Z21)
+	LOAD2(Z22, Z23)
+	LOAD2(Z24, Z25)
+	LOAD2(Z26, Z27)
+	LOAD2(Z28, Z29)
+	LOAD2(Z30, Z31)
+	START
+	TESTQ CX, CX
+	JZ   triangle
+
+bodyk:
+	B2
+	FNMA2((SI), Z2, Z16, Z17)
+	FNMA2((SI)(R11*1), Z3, Z18, Z19)
+	FNMA2((SI)(R11*2), Z4, Z20, Z21)
+	FNMA2((SI)(BX*1), Z5, Z22, Z23)
+	FNMA2((DI), Z6, Z24, Z25)
+	FNMA2((DI)(R11*1), Z7, Z26, Z27)
+	FNMA2((DI)(R11*2), Z8, Z28, Z29)
+	FNMA2((DI)(BX*1), Z9, Z30, Z31)
+	ADDQ $8, SI
+	ADDQ $8, DI
+	DECQ CX
+	JNZ  bodyk
+
+triangle:
+	TAKE((SI)(R11*1), Z3, Z16, Z17, Z18, Z19)
+	TAKE((SI)(R11*2), Z4, Z16, Z17, Z20, Z21)
+	TAKE((SI)(BX*1), Z5, Z16, Z17, Z22, Z23)
+	TAKE((DI), Z6, Z16, Z17, Z24, Z25)
+	TAKE((DI)(R11*1), Z7, Z16, Z17, Z26, Z27)
+	TAKE((DI)(R11*2), Z8, Z16, Z17, Z28, Z29)
+	TAKE((DI)(BX*1), Z9, Z16, Z17, Z30, Z31)
+	TAKE(8(SI)(R11*2), Z4, Z18, Z19, Z20, Z21)
+	TAKE(8(SI)(BX*1), Z5, Z18, Z19, Z22, Z23)
+	TAKE(8(DI), Z6, Z18, Z19, Z24, Z25)
+	TAKE(8(DI)(R11*1), Z7, Z18, Z19, Z26, Z27)
+	TAKE(8(DI)(R11*2), Z8, Z18, Z19, Z28, Z29)
+	TAKE(8(DI)(BX*1), Z9, Z18, Z19, Z30, Z31)
+	TAKE(16(SI)(BX*1), Z5, Z20, Z21, Z22, Z23)
+	TAKE(16(DI), Z6, Z20, Z21, Z24, Z25)
+	TAKE(16(DI)(R11*1), Z7, Z20, Z21, Z26, Z27)
+	TAKE(16(DI)(R11*2), Z8, Z20, Z21, Z28, Z29)
+	TAKE(16(DI)(BX*1), Z9, Z20, Z21, Z30, Z31)
+	TAKE(24(DI), Z6, Z22, Z23, Z24, Z25)
+	TAKE(24(DI)(R11*1), Z7, Z22, Z23, Z26, Z27)
+	TAKE(24(DI)(R11*2), Z8, Z22, Z23, Z28, Z29)
+	TAKE(24(DI)(BX*1), Z9, Z22, Z23, Z30, Z31)
+	TAKE(32(DI)(R11*1), Z7, Z24, Z25, Z26, Z27)
+	TAKE(32(DI)(R11*2), Z8, Z24, Z25, Z28, Z29)
+	TAKE(32(DI)(BX*1), Z9, Z24, Z25, Z30, Z31)
+	TAKE(40(DI)(R11*2), Z8, Z26, Z27, Z28, Z29)
+	TAKE(40(DI)(BX*1), Z9, Z26, Z27, Z30, Z31)
+	TAKE(48(DI)(BX*1), Z9, Z28, Z29, Z30, Z31)
+	MOVQ AX, SI
+	STORE2(Z16, Z17)
+	STORE2(Z18, Z19)
+	STORE2(Z20, Z21)
+	STORE2(Z22, Z23)
+	STORE2(Z24, Z25)
+	STORE2(Z26, Z27)
+	STORE2(Z28, Z29)
+	STORE2(Z30, Z31)
+	LEAQ (AX)(R8*8), AX
+	LEAQ (R10)(R11*8), R10
+	ADDQ $8, R12
+	SUBQ $8, R14
+	JMP  body
+
+next:
+	ADDQ $128, R13
+	SUBQ $16, R15
+	JGT  panel
+	VZEROUPPER
+	RET
+
+// CTAKE takes the number at A times the row U, V off the sums P, Q and M, N.
+#define CTAKE(A, B, U, V, P, Q, M, N) \
+	VBROADCASTSD A, Z2; \
+	VBROADCASTSD B, Z3; \
+	VFNMADD231PD U, Z2, P; \
+	VFNMADD231PD V, Z2, Q; \
+	VFMADD231PD U, Z3, M; \
+	VFMADD231PD V, Z3, N
+
+DATA unit<>+0(SB)/8, $1.0
+GLOBL unit<>(SB), RODATA|NOPTR, $8
+
+// func solve512complex(l *complex128, row int, x *complex128, ldx, m, n int)
+TEXT ·solve512complex(SB), NOSPLIT, $0-48
+	VBROADCASTSD unit<>(SB), Z10
+	MOVQ row+8(FP), R11
+	SHLQ $4, R11
+	LEAQ (R11)(R11*2), BX
+	MOVQ x+16(FP), R13
+	MOVQ ldx+24(FP), R8
+	SHLQ $4, R8
+	MOVQ R8, R9
+	MOVQ n+40(FP), R15
+	ADDQ R15, R15
+
+cpanel:
+	MASKS
+	MOVQ R13, AX
+	MOVQ l+0(FP), R10
+	MOVQ m+32(FP), R14
+	XORQ R12, R12
+
+chead:
+	TESTQ $3, R14
+	JZ   cbody
+	TESTQ R12, R12
+	JZ   cheadnext
+	MOVQ AX, SI
+	LOAD2(Z16, Z17)
+	ZERO(Z24)
+	ZERO(Z25)
+	START
+
+cheadk:
+	B2
+	CTAKE((SI), 8(SI), Z0, Z1, Z16, Z17, Z24, Z25)
+	ADDQ $16, SI
+	DECQ CX
+	JNZ  cheadk
+	CLOSE(Z24, Z16)
+	CLOSE(Z25, Z17)
+	MOVQ AX, SI
+	STORE2(Z16, Z17)
+
+cheadnext:
+	ADDQ R8, AX
+	ADDQ R11, R10
+	INCQ R12
+	DECQ R14
+	JMP  chead
+
+cbody:
+	TESTQ R14, R14
+	JZ   cnext
+	MOVQ AX, SI
+	LOAD2(Z16, Z17)
+	LOAD2(Z18, Z19)
+	LOAD2(Z20, Z21)
+	LOAD2(Z22, Z23)
+	ZERO(Z24)
+	ZERO(Z25)
+	ZERO(Z26)
+	ZERO(Z27)
+	ZERO(Z28)
+	ZERO(Z29)
+	ZERO(Z30)
+	ZERO(Z31)
+	START
+	TESTQ CX, CX
+	JZ   ctriangle
+
+cbodyk:
+	B2
+	CTAKE((SI), 8(SI), Z0, Z1, Z16, Z17, Z24, Z25)
+	CTAKE((SI)(R11*1), 8(SI)(R11*1), Z0, Z1, Z18, Z19, Z26, Z27)
+	CTAKE((SI)(R11*2), 8(SI)(R11*2), Z0, Z1, Z20, Z21, Z28, Z29)
+	CTAKE((SI)(BX*1), 8(SI)(BX*1), Z0, Z1, Z22, Z23, Z30, Z31)
+	ADDQ $16, SI
+	DECQ CX
+	JNZ  cbodyk
+	CLOSE(Z24, Z16)
+	CLOSE(Z25, Z17)
+
+ctriangle:
+	CTAKE((SI)(R11*1), 8(SI)(R11*1), Z16, Z17, Z18, Z19, Z26, Z27)
+	CTAKE((SI)(R11*2), 8(SI)(R11*2), Z16, Z17, Z20, Z21, Z28, Z29)
+	CTAKE((SI)(BX*1), 8(SI)(BX*1), Z16, Z17, Z22, Z23, Z30, Z31)
+	CLOSE(Z26, Z18)
+	CLOSE(Z27, Z19)
+	CTAKE(16(SI)(R11*2), 24(SI)(R11*2), Z18, Z19, Z20, Z21, Z28, Z29)
+	CTAKE(16(SI)(BX*1), 24(SI)(BX*1), Z18, Z19, Z22, Z23, Z30, Z31)
+	CLOSE(Z28, Z20)
+	CLOSE(Z29, Z21)
+	CTAKE(32(SI)(BX*1), 40(SI)(BX*1), Z20, Z21, Z22, Z23, Z30, Z31)
+	CLOSE(Z30, Z22)
+	CLOSE(Z31, Z23)
+	MOVQ AX, SI
+	STORE2(Z16, Z17)
+	STORE2(Z18, Z19)
+	STORE2(Z20, Z21)
+	STORE2(Z22, Z23)
+	LEAQ (AX)(R8*4), AX
+	LEAQ (R10)(R11*4), R10
+	ADDQ $4, R12
+	SUBQ $4, R14
+	JMP  cbody
+
+cnext:
+	ADDQ $128, R13
+	SUBQ $16, R15
+	JGT  cpanel
+	VZEROUPPER
+	RET
