@@ -166,7 +166,7 @@ func digits(b *bounded) string {
 func parsePoint(p *schema.Physics, axes []schema.AxisBlock, args []string) ([]float64, error) {
 	given := map[string]float64{}
 	for _, arg := range args {
-		name, v, err := parseValue(p, arg)
+		name, v, err := parseValue("at", p, arg)
 		if err != nil {
 			return nil, err
 		}
@@ -193,21 +193,22 @@ func parsePoint(p *schema.Physics, axes []schema.AxisBlock, args []string) ([]fl
 	return point, nil
 }
 
-func parseValue(p *schema.Physics, arg string) (string, float64, error) {
+// parseValue reads one name=value argument of a command.
+func parseValue(command string, p *schema.Physics, arg string) (string, float64, error) {
 	name, text, ok := strings.Cut(arg, "=")
 	if !ok {
-		return "", 0, usage("at: found %q, expected name=value such as width=1.73um", arg)
+		return "", 0, usage("%s: found %q, expected name=value such as width=1.73um", command, arg)
 	}
 	q, ok := p.Parameter(name)
 	if !ok {
-		return "", 0, usage("at: found the unknown parameter %s", name)
+		return "", 0, usage("%s: found the unknown parameter %s", command, name)
 	}
 	v, d, err := quantity.Parse(text)
 	if err != nil {
-		return "", 0, usage("at: %s: %w", name, err)
+		return "", 0, usage("%s: %s: %w", command, name, err)
 	}
 	if d != q.Dimension {
-		return "", 0, usage("at: %s: found %s, expected %s", name, quantity.Describe(d), quantity.Describe(q.Dimension))
+		return "", 0, usage("%s: %s: found %s, expected %s", command, name, quantity.Describe(d), quantity.Describe(q.Dimension))
 	}
 	return name, v, nil
 }

@@ -43,6 +43,7 @@ type commands struct {
 	Collate   collateCommand   `cmd:"" help:"Join the parts of a run into its tables and surfaces."`
 	Table     tableCommand     `cmd:"" help:"Write rows of a run's tables to standard output."`
 	At        atCommand        `cmd:"" help:"Evaluate a run's surfaces at any point of its box."`
+	Fields    fieldsCommand    `cmd:"" help:"Draw the fields of one mode, or write them as a table."`
 	Report    reportCommand    `cmd:"" help:"Write a run's page, report.html."`
 	Materials materialsCommand `cmd:"" help:"List the built-in materials with their source and range."`
 	Schema    schemaCommand    `cmd:"" help:"Print the JSON Schema of the sweep file, for editors."`

@@ -3,6 +3,8 @@ package report
 import (
 	"fmt"
 	"slices"
+
+	"betaloom/scheduler/palette"
 )
 
 // colouring is how the values of a quantity become colours and lines.
@@ -24,7 +26,7 @@ func colours(q Quantity, values []float64) colouring {
 		c.signed(s)
 	} else {
 		s = s.padded(0)
-		c.ramp = ramp{[]float64{s.Lo, s.Hi}, sequential}
+		c.ramp = ramp{[]float64{s.Lo, s.Hi}, palette.Sequential}
 		var decimals int
 		c.levels, decimals = s.ticks(8)
 		c.texts = labels(c.levels, decimals)
@@ -41,7 +43,7 @@ func (c *colouring) signed(s span) {
 	} else {
 		c.note = "Each side of zero has a colour scale of its own. " + c.note
 	}
-	c.ramp = ramp{[]float64{s.Lo, 0, s.Hi}, diverging}
+	c.ramp = ramp{[]float64{s.Lo, 0, s.Hi}, palette.Diverging}
 	below, _ := span{s.Lo, 0}.ticks(4)
 	above, _ := span{0, s.Hi}.ticks(4)
 	for _, v := range slices.Concat(below, above) {

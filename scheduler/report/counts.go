@@ -7,6 +7,8 @@ import (
 	"math"
 	"slices"
 	"strings"
+
+	"betaloom/scheduler/palette"
 )
 
 // bar of a small bar chart: points by count of modes.
@@ -83,9 +85,9 @@ func (d *Data) countKeys(most int) []key {
 
 func countColour(n, most int) color.RGBA {
 	if most <= 1 {
-		return sequential(0.6)
+		return palette.Sequential(0.6)
 	}
-	return sequential(0.15 + 0.8*float64(n-1)/float64(most-1))
+	return palette.Sequential(0.15 + 0.8*float64(n-1)/float64(most-1))
 }
 
 func hex(c color.RGBA) string { return fmt.Sprintf("#%02x%02x%02x", c.R, c.G, c.B) }

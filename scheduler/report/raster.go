@@ -10,6 +10,8 @@ import (
 	"image/png"
 	"math"
 	"sort"
+
+	"betaloom/scheduler/palette"
 )
 
 // ramp turns values into shades: below, between and above its stops.
@@ -29,8 +31,8 @@ func (r ramp) t(v float64) float64 {
 // palette is transparent, then the ramp's shades.
 func (r ramp) palette() color.Palette {
 	p := color.Palette{color.RGBA{}}
-	for i := range shades {
-		p = append(p, r.Colour(float64(i)/(shades-1)))
+	for i := range palette.Shades {
+		p = append(p, r.Colour(float64(i)/(palette.Shades-1)))
 	}
 	return p
 }
@@ -39,7 +41,7 @@ func (r ramp) shade(v float64) uint8 {
 	if math.IsNaN(v) {
 		return 0
 	}
-	return uint8(1 + int(r.t(v)*(shades-1)+0.5))
+	return uint8(1 + int(r.t(v)*(palette.Shades-1)+0.5))
 }
 
 // paint draws a field over width x height pixels, linear between its nodes;
@@ -127,8 +129,8 @@ func pngURL(img image.Image) (template.URL, error) {
 
 // bar is the colour bar of a ramp, with the levels that have a line.
 func (r ramp) bar(title string, width float64, levels []float64, texts []string) (*frame, error) {
-	img := image.NewPaletted(image.Rect(0, 0, shades, 1), r.palette())
-	for i := range shades {
+	img := image.NewPaletted(image.Rect(0, 0, palette.Shades, 1), r.palette())
+	for i := range palette.Shades {
 		img.Pix[i] = uint8(1 + i)
 	}
 	src, err := pngURL(img)

@@ -17,6 +17,7 @@ type slabProblem struct {
 	solver   *slab.Solver
 	stack    slab.Stack
 	named    []int // layers whose confinement is reported
+	modes    int   // the most that a run reports at a point
 }
 
 func newSlab(p *schema.Physics) (*slabProblem, error) {
@@ -25,7 +26,7 @@ func newSlab(p *schema.Physics) (*slabProblem, error) {
 		return nil, err
 	}
 	l := p.Section.Layers
-	s := &slabProblem{layers: l, resolver: r, solver: slab.New(r.Params())}
+	s := &slabProblem{layers: l, resolver: r, solver: slab.New(r.Params()), modes: p.Modes}
 	s.stack = slab.Stack{
 		Layers:       make([]slab.Layer, len(l.Layers)),
 		GroundBottom: l.GroundBottom,

@@ -12,75 +12,70 @@ const slack = 1e-9
 const rounding = 1e-13
 
 const (
-	gain  = 0.2 // the share of the two meshes' difference that the finer one's error stays below
-	lower = 0.5 // the share of the lower derivatives' differences that is added, as a difference may vanish by chance
+	tail = 1 // the share of what higher polynomials would contribute to L that the error stays below
+
+	// by how much the errors of L's derivatives may exceed what the rate below gives them
+	first  = 1.5
+	second = 4
+	third  = 8
 )
 
-// change is how much the numbers of two solutions differ.
-type change struct{ beta, kappa, b1, b2, b3 float64 }
+// estimate is the errors of beta (1/m) and of its derivatives in the angular frequency that a mesh leaves.
+type estimate struct{ b, b1, b2, b3 float64 }
 
-func (m *solved) from(o *solved) change {
-	return change{
-		absolute(m.beta.V - o.beta.V), math.Abs(imag(m.beta.V - o.beta.V)),
-		math.Abs(real(m.beta.W - o.beta.W)), math.Abs(real(m.beta.WW - o.beta.WW)), math.Abs(real(m.beta.WWW - o.beta.WWW)),
+// estimate takes them from the highest polynomials of the mesh: that of L is a share of e = x'F x of these alone, and as they
+// change at the rate q = sqrt(x1'F x1/x'F x) with frequency, e does at 2 q. What follows is beta = sqrt(L) differentiated.
+func (m *solved) estimate() (e estimate) {
+	if !(m.tails.L > 0) {
+		return e
 	}
+	b := real(m.beta.V)
+	r1, r2, r3 := math.Abs(real(m.beta.W))/b, math.Abs(real(m.beta.WW))/b, math.Abs(real(m.beta.WWW))/b
+	q := 2 * math.Sqrt(m.tails.L1/m.tails.L)
+	e.b = tail * m.tails.L / (2 * b)
+	e.b1 = first*q*e.b + r1*e.b
+	e.b2 = second*q*q*e.b + 2*r1*e.b1 + r2*e.b
+	e.b3 = third*q*q*q*e.b + 3*r1*e.b2 + 3*r2*e.b1 + r3*e.b
+	return e
 }
 
-// scaled multiplies each change by its share.
-func (c change) scaled(s change) change {
-	return change{c.beta * s.beta, c.kappa * s.kappa, c.b1 * s.b1, c.b2 * s.b2, c.b3 * s.b3}
-}
-
-// error estimates that of the finer solution from the difference to the coarser one, and the rate where there is a third.
-func (r *refined) error() change {
-	d := r.fine.from(r.coarse)
-	if r.third == nil {
-		return d.scaled(change{gain, gain, gain, gain, gain})
-	}
-	t := r.coarse.from(r.third)
-	share := func(now, before float64) float64 {
-		if before == 0 {
-			return gain
-		}
-		return min(gain, 2*now/before)
-	}
-	return d.scaled(change{share(d.beta, t.beta), share(d.kappa, t.kappa), share(d.b1, t.b1), share(d.b2, t.b2), share(d.b3, t.b3)})
-}
-
-// bound forms the bounds of a mode from its discretisations, the walls and the residual.
-func (p *point) bound(r *refined) (b bound) {
-	f := r.fine
-	t, _ := p.truncate(f.class, f, &p.bounds)
-	e := r.error()
+// bound forms the bounds of a mode from the estimate, the walls, the residual and rounding.
+func (p *point) bound(m *solved) (b bound) {
+	e := m.estimate()
+	t, _ := p.truncate(m.class, m, &p.bounds)
 	cw := lightSpeed * p.w
-	dn, dg := e.beta/p.k, e.b1*lightSpeed
-	res := f.pair.Residual * f.pair.Residual * f.neff()
-	floor := res + rounding*f.neff()
-	lossy := min(1, 10*math.Abs(imag(f.beta.V))/real(f.beta.V))
-	b.neff = dn + t.neff + floor
-	b.kappa = e.kappa/p.k + lossy*dn + t.neff + floor
-	b.ng = dg + lower*dn + t.ng + 10*floor
-	b2, b3 := math.Abs(real(f.beta.WW)), math.Abs(real(f.beta.WWW))
-	b.gvd = slack*b2 + e.b2 + lower*(dg+dn)/cw + t.gvd + 1e3*floor/cw
-	b.beta3 = 10*slack*b3 + e.b3 + lower*(e.b2/p.w+(dg+dn)/(cw*p.w)) + t.beta3 + 1e5*floor/(cw*p.w)
+	n, top := m.neff(), p.densest()
+	floor := m.pair.Residual*m.pair.Residual*n + rounding*top*top/n
+	near := max(1, m.ng()/n) // near a cut-off digits are lost
+	lossy := min(1, 10*math.Abs(imag(m.beta.V))/real(m.beta.V))
+	b.neff = e.b/p.k + t.neff + floor
+	b.kappa = lossy*(e.b/p.k+t.neff) + floor
+	b.ng = e.b1*lightSpeed + t.ng + 10*near*floor
+	b.gvd = e.b2 + slack*math.Abs(real(m.beta.WW)) + t.gvd + 30*near*near*floor/cw
+	b.beta3 = e.b3 + 10*slack*math.Abs(real(m.beta.WWW)) + t.beta3 + 100*near*near*near*floor/(cw*p.w)
 	return b
 }
 
-// short is how many times larger than asked the worst bound is.
-func (p *point) short(list []refined) (worst float64) {
+func (b *bound) add(o *bound) {
+	b.neff, b.kappa, b.ng, b.gvd, b.beta3 = b.neff+o.neff, b.kappa+o.kappa, b.ng+o.ng, b.gvd+o.gvd, b.beta3+o.beta3
+}
+
+// against is how many times larger than asked a bound is, at worst.
+func (p *point) against(b *bound) (worst float64) {
 	const gvd, beta3 = 1e-27, 1e-39 // s^2/m in a ps^2/km, s^3/m in a ps^3/km
 	a := &p.accuracy
-	against := func(err, asked float64) {
-		if asked > 0 {
-			worst = max(worst, err/asked)
+	for _, v := range [][2]float64{{b.neff, a.Neff}, {b.ng, a.Ng}, {b.gvd, a.GVDPs2PerKm * gvd}, {b.beta3, a.Beta3Ps3PerKm * beta3}} {
+		if v[1] > 0 {
+			worst = max(worst, v[0]/v[1])
 		}
 	}
+	return worst
+}
+
+// short is how many times larger than asked the worst bound of a list is.
+func (p *point) short(list []solved) (worst float64) {
 	for i := range list {
-		b := &list[i].bound
-		against(b.neff, a.Neff)
-		against(b.ng, a.Ng)
-		against(b.gvd, a.GVDPs2PerKm*gvd)
-		against(b.beta3, a.Beta3Ps3PerKm*beta3)
+		worst = max(worst, p.against(&list[i].bound))
 	}
 	return worst
 }

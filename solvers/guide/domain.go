@@ -70,54 +70,47 @@ func (p *point) guess() (b section.Bounds) {
 	return b
 }
 
-// truncation is what the walls' distance does to a mode, as bounds.
-type truncation struct{ neff, ng, gvd, beta3 float64 }
-
-// truncate estimates the walls' effect from the derivative in their distance: it falls as exp(-2 g d), so that what
-// is left beyond d is that over 2 g. Its derivatives in frequency grow with 2 d dg/dw each time.
-func (p *point) truncate(c *class, m *solved, b *section.Bounds) (t truncation, more [4]float64) {
-	n, ng := m.neff(), m.ng()
-	for side, open := range p.openSides() {
-		if !open || side == left && c.halfX || side == bottom && c.halfY {
+// truncate bounds what the walls' distance does to a mode, in all and by side. The derivative of L in the distance is exact, and
+// falls as exp(-2 g d): what is left beyond d is that over 2 g. Its derivatives in frequency grow with f = 2 d w dg/dw each
+// time, the higher ones faster, as g bends.
+func (p *point) truncate(c *class, m *solved, b *section.Bounds) (all bound, side [4]bound) {
+	n, ng, cw := m.neff(), m.ng(), lightSpeed*p.w
+	for i, open := range p.openSides() {
+		if !open || i == left && c.halfX || i == bottom && c.halfY {
 			continue
 		}
-		g, o := p.decay(side, c, n), p.outer(side, c)
-		if g == 0 {
-			g = 1e-9 * p.k
-		}
-		slope := m.d.Wall[side]
-		dn := absolute(slope.L) / (2 * p.k * p.k * n)
-		e := dn / (2 * g)
-		f := 2 * *distance(b, side) * p.k * p.k / g * math.Abs(n*ng-o*o)
-		t.neff += e
-		t.ng += e * (1 + f)
-		t.gvd += e * f * (2 + f) / (lightSpeed * p.w)
-		t.beta3 += e * f * (f*f + 3*f + 3) / (lightSpeed * p.w * p.w)
-		more[side] = e
+		g, o := max(p.decay(i, c, n), 1e-9*p.k), p.outer(i, c)
+		e := wary * absolute(m.d.Wall[i].L) / (2 * p.k * p.k * n) / (2 * g)
+		f := 2 * *distance(b, i) * p.k * p.k / g * math.Abs(n*ng-o*o)
+		side[i] = bound{neff: e, kappa: e, ng: e * (1 + f), gvd: 3 * e * f * (2 + f) / cw, beta3: 10 * e * f * (f*f + 3*f + 3) / (cw * p.w)}
+		all.add(&side[i])
 	}
-	return t, more
+	return all, side
 }
 
 // goal is the share of the accuracy asked that the walls may take.
-const goal = 0.05
+const goal = 0.1
+
+// wary is by how much the walls' effect is taken to be larger than its estimate, which knows one rate of decay on each side.
+const wary = 3
 
 // widen moves walls outward until the effect of each is below the goal; it reports whether any moved.
 func (p *point) widen(b *section.Bounds, sets []classModes) bool {
 	moved := false
-	limit := goal * p.accuracy.Neff / 4
 	for i := range sets {
 		c := sets[i].class
 		far := p.farthest(c)
 		for j := range sets[i].modes {
 			m := &sets[i].modes[j]
 			_, effect := p.truncate(c, m, b)
-			for side, e := range effect {
+			for side := range effect {
 				d, most := distance(b, side), *distance(&far, side)
-				if e <= limit || *d >= most {
+				excess := p.against(&effect[side]) / (goal / 4)
+				if excess <= 1 || *d >= most {
 					continue
 				}
 				g := p.decay(side, c, m.neff())
-				step := (math.Log(e/limit) + 2) / (2 * g)
+				step := (math.Log(excess) + 2) / (2 * g)
 				*d = min(*d+max(step, 0.2**d), max(most, *d), 3**d+1/g)
 				moved = true
 			}

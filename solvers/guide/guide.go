@@ -70,8 +70,8 @@ type point struct {
 	want    int
 	bounds  section.Bounds
 	size    float64 // widest cell, m
-	smooth  bool    // no corner: fields without singularities
-	answer  []refined
+	cold    bool    // there is no neighbour to start from
+	answer  []solved
 }
 
 // Modes implements solvers.Problem.
@@ -97,6 +97,5 @@ func (g *Guide) place(ctx context.Context, q solvers.Q, want int) (*point, error
 		return nil, err
 	}
 	pt.size = pt.cellSize()
-	pt.smooth, err = pt.cornerless()
-	return pt, err
+	return pt, nil
 }

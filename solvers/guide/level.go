@@ -8,8 +8,7 @@ import (
 // fineness is layers of cells toward each corner and the order of the widest cells.
 type fineness struct{ layers, order int }
 
-// level is a mesh whose modes are the answer and a coarser one to compare them with. Its order is lower by two: a field that is even or
-// odd about the middle of a cell gains nothing from every other order.
+// level is a mesh whose modes are the answer and a coarser one that says where to look for them and how far the walls must be.
 type level struct{ coarse, fine fineness }
 
 // levels are those in use, from the coarsest.
@@ -46,22 +45,6 @@ func (p *point) mesh(c *class, l fineness, b *section.Bounds) (*section.Mesh, er
 		Bounds: *b, Order: l.order, MinOrder: 2, CornerLayers: l.layers, Size: p.size,
 		HalfX: c.halfX, HalfY: c.halfY, WallX: c.wallX, WallY: c.wallY, Outer: section.Electric,
 	})
-}
-
-// cornerless says whether the section has no corner: its mesh is the same however corners are graded. Only metal walls
-// can make such a section of layers with strips, unless strips and fill are the same.
-func (p *point) cornerless() (bool, error) {
-	if _, _, _, _, walls := p.outline.Corners(); walls && p.outline.SideWalls == nil {
-		return false, nil
-	}
-	b := p.guess()
-	p.level(&b)
-	plain, err := p.mesh(&p.classes[0], fineness{0, 2}, &b)
-	if err != nil {
-		return false, err
-	}
-	graded, err := p.mesh(&p.classes[0], fineness{1, 2}, &b)
-	return err == nil && len(plain.OrderX) == len(graded.OrderX) && len(plain.OrderY) == len(graded.OrderY), err
 }
 
 // shelf keeps the topologies that were used last.

@@ -10,7 +10,7 @@ import (
 
 // name gives every mode its type, its name and its signature. The name counts the lobes of the
 // dominant field: TE10 has two across and one up.
-func (p *point) name(answer []refined, out []solvers.Mode) {
+func (p *point) name(answer []solved, out []solvers.Mode) {
 	seen := map[string]int{}
 	for i := range answer {
 		m := &out[i]
@@ -19,12 +19,12 @@ func (p *point) name(answer []refined, out []solvers.Mode) {
 		if te {
 			kind = "TE"
 		}
-		across, up := p.lobes(answer[i].fine, te)
+		across, up := p.lobes(&answer[i], te)
 		m.Type, m.Family = "quasi-"+kind, fmt.Sprintf("%s%d%d", kind, across, up)
 		if seen[m.Family]++; seen[m.Family] > 1 {
 			m.Family = fmt.Sprintf("%s-%d", m.Family, seen[m.Family])
 		}
-		m.Signature = p.signature(answer[i].fine)
+		m.Signature = p.signature(&answer[i])
 	}
 }
 

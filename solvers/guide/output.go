@@ -11,7 +11,7 @@ import (
 const nearCutoff = 1e-5
 
 // modes turns the answer into rows.
-func (p *point) modes(answer []refined, at int) []solvers.Mode {
+func (p *point) modes(answer []solved, at int) []solvers.Mode {
 	next := &start{level: at, bounds: p.bounds, classes: map[string]warm{}}
 	for i := range p.classes {
 		next.classes[p.classes[i].label] = p.classes[i].start
@@ -29,7 +29,7 @@ func (p *point) modes(answer []refined, at int) []solvers.Mode {
 }
 
 // generous says whether a coarser level would do as well.
-func (p *point) generous(answer []refined) bool {
+func (p *point) generous(answer []solved) bool {
 	const enough = 1e-3
 	for i := range answer {
 		if answer[i].bound.neff > enough*p.accuracy.Neff {
@@ -40,13 +40,13 @@ func (p *point) generous(answer []refined) bool {
 }
 
 // mode fills one row.
-func (p *point) mode(r *refined) solvers.Mode {
-	f, nan := r.fine, math.NaN()
+func (p *point) mode(f *solved) solvers.Mode {
+	nan := math.NaN()
 	m := solvers.Mode{
 		Symmetry: f.class.label,
 		Neff:     f.neff(), Kappa: 0 - imag(f.beta.V)/p.k,
 		Ng: f.ng(), GVD: real(f.beta.WW), Beta3: real(f.beta.WWW),
-		NeffErr: r.bound.neff, KappaErr: r.bound.kappa, NgErr: r.bound.ng, GVDErr: r.bound.gvd, Beta3Err: r.bound.beta3,
+		NeffErr: f.bound.neff, KappaErr: f.bound.kappa, NgErr: f.bound.ng, GVDErr: f.bound.gvd, Beta3Err: f.bound.beta3,
 		Weff: nan, Z: complex(nan, nan), Cutoff: nan, CPerM: nan, LPerM: nan,
 	}
 	p.sensitivities(f, &m)

@@ -4,7 +4,6 @@ import (
 	"errors"
 	"fmt"
 	"math"
-	"math/cmplx"
 	"sort"
 
 	"betaloom/schema"
@@ -24,7 +23,7 @@ type start struct {
 }
 
 // warm is the vectors of a class on a level's meshes.
-type warm [3]vectors
+type warm [2]vectors
 
 type vectors struct {
 	mesh *section.Mesh
@@ -54,7 +53,9 @@ type solved struct {
 	pencil *channel.Pencil
 	class  *class
 	d      channel.Derivatives
-	beta   jet.Jet
+	beta   jet.Jet // d and beta have no derivatives where the vector has none
+	tails  channel.Tails
+	bound  bound
 	k      float64
 }
 
@@ -70,7 +71,7 @@ type classModes struct {
 
 // solve finds the modes of a point.
 func (p *point) solve(s *start) ([]solvers.Mode, solvers.Count, error) {
-	if s == nil {
+	if p.cold = s == nil; p.cold {
 		s = &start{level: p.first(), bounds: p.guess()}
 	}
 	for i := range p.classes {
@@ -182,7 +183,6 @@ var errLarge = errors.New("the section is too large for a finer mesh")
 const (
 	onCoarse = iota
 	onFine
-	onThird
 )
 
 // find solves one class on a mesh: at most want modes.
@@ -193,7 +193,7 @@ func (p *point) find(c *class, l fineness, want, stage int, guess []float64) (cl
 		return out, err
 	}
 	out.mesh = mesh
-	o := channel.Options{Want: want, Low: c.low, Near: c.start[stage].fits(mesh), Guess: guess, Slopes: true}
+	o := channel.Options{Want: want, Low: c.low, Near: c.start[stage].fits(mesh), Guess: guess, Slopes: stage == onFine || p.cold}
 	if len(o.Near) >= want {
 		o.Near, o.Expect = o.Near[:want], want
 	} else if len(guess) >= want {
@@ -209,8 +209,14 @@ func (p *point) find(c *class, l fineness, want, stage int, guess []float64) (cl
 	}
 	v := vectors{mesh: mesh}
 	for _, m := range pairs {
-		s := solved{pair: m, pencil: pencil, class: c, d: pencil.Differentiate(&m), k: p.k}
+		s := solved{pair: m, pencil: pencil, class: c, k: p.k, d: channel.Derivatives{L: jet.Const(m.L)}}
+		if o.Slopes {
+			s.d = pencil.Differentiate(&m)
+		}
 		s.beta = jet.Sqrt(s.d.L)
+		if stage == onFine {
+			s.tails = pencil.Tails(&m)
+		}
 		out.modes = append(out.modes, s)
 		v.x = append(v.x, m.X)
 	}
@@ -234,7 +240,7 @@ func (p *point) settle(l fineness, last bool) ([]classModes, error) {
 			guesses[s.class.label] = indices(s.modes)
 		}
 		chosen := p.choose(sets)
-		if p.hidden(sets, chosen) || p.widen(&p.bounds, chosen) {
+		if p.hidden(sets, chosen) || p.cold && p.widen(&p.bounds, chosen) {
 			continue
 		}
 		if p.missing(sets) && !last {
@@ -339,60 +345,53 @@ func (p *point) drop(sets []classModes) {
 	}
 }
 
-// refined is a chosen mode on the two meshes of a level, or on three.
-type refined struct {
-	fine, coarse *solved
-	third        *solved // nil but for fields without singularities
-	bound        bound
-}
-
-// climb solves finer and finer levels until the difference of a level's two meshes is small enough.
-func (p *point) climb(coarse []classModes, at int) ([]refined, int, error) {
-	var answer []refined
-	solved := at
+// climb solves finer and finer levels until the bounds are as small as asked.
+func (p *point) climb(coarse []classModes, at int) ([]solved, int, error) {
+	var answer []solved
+	reached := at
 	for {
-		fine, err := p.again(coarse, levels()[at].fine, onFine)
+		fine, err := p.fine(coarse, levels()[at].fine)
 		if errors.Is(err, errLarge) && answer != nil {
-			return answer, solved, nil
+			return answer, reached, nil
 		}
 		if err != nil {
 			return nil, 0, err
 		}
-		third, err := p.coarser(fine, levels()[at].coarse)
-		if err != nil {
-			return nil, 0, err
-		}
-		answer = p.pairUp(fine, coarse, third)
+		answer, reached = p.judge(fine), at
 		short := p.short(answer)
 		if short <= 1 || at+1 == len(levels()) {
 			return answer, at, nil
 		}
-		solved = at
 		at = min(at+max(1, int(math.Round(math.Log(short)/math.Log(step)))), len(levels())-1)
 		p.forget()
-		if coarse, err = p.again(fine, levels()[at].coarse, onCoarse); errors.Is(err, errLarge) {
-			return answer, solved, nil
-		} else if err != nil {
-			return nil, 0, err
-		}
+		coarse = fine
 	}
-}
-
-// coarser solves the modes on a third mesh, coarser than the coarse one, where there are no corners: such fields converge
-// so fast that the difference of two meshes says little of the finer one's error, but for the rate.
-func (p *point) coarser(sets []classModes, l fineness) ([]classModes, error) {
-	if !p.smooth || l.order < 4 {
-		return nil, nil
-	}
-	third, err := p.again(sets, fineness{l.layers, l.order - 2}, onThird)
-	if err != nil && p.ctx.Err() == nil {
-		return nil, nil // too coarse to show them all
-	}
-	return third, err
 }
 
 // step is by how much a level is better than the one before, as a rule.
 const step = 15
+
+// fine solves the classes of modes on a fine mesh, and once more if its walls turn out to be too near.
+func (p *point) fine(sets []classModes, l fineness) ([]classModes, error) {
+	fine, err := p.again(sets, l, onFine)
+	if err != nil || !p.widen(&p.bounds, fine) {
+		return fine, err
+	}
+	p.forget()
+	return p.again(fine, l, onFine)
+}
+
+// judge gives all modes their bounds, from the highest index down.
+func (p *point) judge(sets []classModes) (out []solved) {
+	for _, s := range sets {
+		out = append(out, s.modes...)
+	}
+	for i := range out {
+		out[i].bound = p.bound(&out[i])
+	}
+	sort.SliceStable(out, func(i, j int) bool { return out[i].neff() > out[j].neff() })
+	return out
+}
 
 // again solves the classes of modes on another mesh.
 func (p *point) again(sets []classModes, l fineness, stage int) (out []classModes, err error) {
@@ -415,43 +414,4 @@ func indices(modes []solved) (n []float64) {
 		n = append(n, modes[i].neff())
 	}
 	return n
-}
-
-// pairUp finds for each fine mode the coarse one that it is, and where there is a third mesh the one there.
-func (p *point) pairUp(fine, coarse, third []classModes) (out []refined) {
-	for i := range fine {
-		partner := partners(fine[i].modes, coarse[i].modes)
-		var other []*solved
-		if third != nil {
-			other = partners(fine[i].modes, third[i].modes)
-		}
-		for j := range fine[i].modes {
-			r := refined{fine: &fine[i].modes[j], coarse: partner[j]}
-			if other != nil {
-				r.third = other[j]
-			}
-			r.bound = p.bound(&r)
-			out = append(out, r)
-		}
-	}
-	sort.SliceStable(out, func(i, j int) bool { return out[i].fine.neff() > out[j].fine.neff() })
-	return out
-}
-
-// partners gives for each mode that of another mesh which is nearest in index and group index.
-func partners(modes, others []solved) []*solved {
-	out := make([]*solved, len(modes))
-	taken := make([]bool, len(others))
-	for j := range modes {
-		f := &modes[j]
-		best, at := math.Inf(1), -1
-		for n := range others {
-			c := &others[n]
-			if d := cmplx.Abs(f.beta.V-c.beta.V)/f.k + 0.01*math.Abs(f.ng()-c.ng()); !taken[n] && d < best {
-				best, at = d, n
-			}
-		}
-		taken[at], out[j] = true, &others[at]
-	}
-	return out
 }

@@ -103,11 +103,19 @@ func (s *Solver) alike(c int) bool {
 
 // finish derives a located mode and writes it.
 func finish[T scalar](s *Solver, q *line[T], p *pick, m *solvers.Mode) {
+	norm := derive(q, p)
+	fill(&s.out, q, norm, p, m)
+	unsure(p, m)
+	release(q, p)
+}
+
+// derive carries a located mode's field through the stack as it moves with frequency, or through the mode's own well
+// where it has one; release makes the line whole again.
+func derive[T scalar](q *line[T], p *pick) (norm linear[T]) {
 	u := from[T](p.u)
 	q.meets = 0
 	if p.hi > 0 {
 		q.narrow(p.lo, p.hi)
-		defer q.widened()
 	}
 	if p.tem {
 		q.u = q.films[q.ref].live.e
@@ -121,9 +129,13 @@ func finish[T scalar](s *Solver, q *line[T], p *pick, m *solvers.Mode) {
 		}
 		q.expand(u, slope, q.meets)
 	}
-	norm := q.gather(q.meets, q.shares[:len(q.films)], &q.tails)
-	fill(&s.out, q, norm, p, m)
-	unsure(p, m)
+	return q.gather(q.meets, q.shares[:len(q.films)], &q.tails)
+}
+
+func release[T scalar](q *line[T], p *pick) {
+	if p.hi > 0 {
+		q.widened()
+	}
 }
 
 // reason says why nothing is guided.

@@ -1,4 +1,4 @@
-package report
+package palette
 
 import (
 	"image/color"
@@ -36,23 +36,31 @@ func TestOklch(t *testing.T) {
 	}
 }
 
-func TestSequentialRises(t *testing.T) {
-	last := -1.0
-	for _, x := range linspace(0, 1, shades) {
-		l := lightness(sequential(x))
-		if l < last {
-			t.Fatalf("lightness falls from %.2f to %.2f at %.3f", last, l, x)
-		}
-		last = l
-	}
-	if first := lightness(sequential(0)); last-first < 60 {
-		t.Errorf("lightness runs from %.0f to %.0f, expected a range of 60", first, last)
+// TestSequential: lightness runs one way, and over a range of 60 at least: common practice, no source.
+func TestSequential(t *testing.T) {
+	for name, scale := range map[string]func(float64) color.RGBA{
+		"sequential": Sequential,
+		"fading":     func(x float64) color.RGBA { return Fading(1 - x) },
+	} {
+		t.Run(name, func(t *testing.T) {
+			last := -1.0
+			for _, x := range evenly(0, 1, Shades) {
+				l := lightness(scale(x))
+				if l < last {
+					t.Fatalf("lightness falls from %.2f to %.2f at %.3f", last, l, x)
+				}
+				last = l
+			}
+			if first := lightness(scale(0)); last-first < 60 {
+				t.Errorf("lightness runs from %.0f to %.0f, expected a range of 60", first, last)
+			}
+		})
 	}
 }
 
 func TestDivergingIsBalanced(t *testing.T) {
-	for _, x := range linspace(0, 0.5, 50) {
-		a, b := lightness(diverging(0.5-x)), lightness(diverging(0.5+x))
+	for _, x := range evenly(0, 0.5, 50) {
+		a, b := lightness(Diverging(0.5-x)), lightness(Diverging(0.5+x))
 		if math.Abs(a-b) > 8 {
 			t.Errorf("at %.2f from zero the sides have lightness %.0f and %.0f", x, a, b)
 		}
@@ -97,19 +105,21 @@ func TestDivergingForColourBlind(t *testing.T) {
 	for name, m := range blindness {
 		for _, x := range []float64{0.2, 0.35, 0.5} {
 			// A CIELAB distance of 20 is plain at a glance: common practice, no source.
-			if d := apart(seen(diverging(0.5-x), m), seen(diverging(0.5+x), m)); d < 20 {
+			if d := apart(seen(Diverging(0.5-x), m), seen(Diverging(0.5+x), m)); d < 20 {
 				t.Errorf("%s: at %.2f from zero the sides are %.0f apart, expected 20", name, x, d)
 			}
 		}
 	}
 }
 
+// The page's families, up to eight in each of three themes.
 func TestFamiliesForColourBlind(t *testing.T) {
-	style, err := os.ReadFile("style.css")
+	style, err := os.ReadFile("../report/style.css")
 	if err != nil {
 		t.Fatal(err)
 	}
 	matches := regexp.MustCompile(`--s(\d):#([0-9a-f]{6})`).FindAllSubmatch(style, -1)
+	const mostDrawn = 8
 	if len(matches) != 3*mostDrawn { // light, dark, print
 		t.Fatalf("%d colours of families, expected %d", len(matches), 3*mostDrawn)
 	}
@@ -132,4 +142,12 @@ func TestFamiliesForColourBlind(t *testing.T) {
 			}
 		}
 	}
+}
+
+func evenly(lo, hi float64, n int) []float64 {
+	out := make([]float64, n)
+	for i := range out {
+		out[i] = lo + (hi-lo)*float64(i)/float64(n-1)
+	}
+	return out
 }

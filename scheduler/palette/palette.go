@@ -1,30 +1,41 @@
-package report
+// Package palette holds the colours of maps: sequential scales for values of one sign, a diverging one for values
+// about zero.
+//
+// All are even in lightness as the eye sees it and stay readable under every common colour blindness, in print without colour
+// too. They are made in Oklab, and tests hold them to another measure.
+package palette
 
 import (
 	"image/color"
 	"math"
 )
 
-// shades is the number of colours of a map.
-const shades = 200
+// Shades is the number of colours of a map.
+const Shades = 200
 
 // lch is a colour in the cylindrical form of Oklab (Ottosson, A perceptual
 // color space for image processing, 2020): lightness, chroma and hue in degrees.
 type lch struct{ L, C, H float64 }
 
-// sequential runs from dark to light with an even rise of lightness, which
+// Sequential runs, for t from 0 to 1, from dark to light with an even rise of lightness, which
 // is what colour-blind readers go by, from violet over blue-green to sand.
-func sequential(t float64) color.RGBA {
+func Sequential(t float64) color.RGBA {
 	return blend(t, []lch{{0.28, 0.09, 300}, {0.42, 0.11, 265}, {0.57, 0.09, 225}, {0.71, 0.10, 180}, {0.84, 0.11, 130}, {0.95, 0.07, 95}})
 }
 
-// diverging is blue below zero (t < 0.5), orange above, and light at zero;
+// Fading runs from white to dark with an even fall of lightness, over blue-green and blue to violet: for maps that
+// fade into the page.
+func Fading(t float64) color.RGBA {
+	return blend(t, []lch{{0.985, 0, 190}, {0.84, 0.08, 190}, {0.695, 0.11, 215}, {0.55, 0.12, 250}, {0.405, 0.13, 285}, {0.26, 0.10, 310}})
+}
+
+// Diverging is blue below zero (t < 0.5), orange above, and light at zero;
 // blue and orange stay apart under every common colour blindness.
-func diverging(t float64) color.RGBA {
+func Diverging(t float64) color.RGBA {
 	if t < 0.5 {
-		return blend(1-2*t, []lch{{0.96, 0.012, 245}, {0.80, 0.08, 245}, {0.58, 0.13, 255}, {0.36, 0.13, 265}})
+		return blend(1-2*t, []lch{{0.96, 0, 245}, {0.80, 0.08, 245}, {0.58, 0.13, 255}, {0.36, 0.13, 265}})
 	}
-	return blend(2*t-1, []lch{{0.96, 0.012, 75}, {0.82, 0.09, 72}, {0.62, 0.13, 55}, {0.40, 0.11, 40}})
+	return blend(2*t-1, []lch{{0.96, 0, 75}, {0.82, 0.09, 72}, {0.62, 0.13, 55}, {0.40, 0.11, 40}})
 }
 
 // blend interpolates between evenly spaced stops.
