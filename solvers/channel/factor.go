@@ -112,8 +112,8 @@ func (f *factor[T]) fill(s *system[T], at T) error {
 				extend(front, rest, f.stack[top:top+q*q], n.maps[p])
 			}
 		}
-		if err := f.eliminate(front, rest, fmt.Sprintf("node %d", k)); err != nil {
-			return err
+		if err := f.eliminate(front, rest); err != nil {
+			return fmt.Errorf("channel: node %d: %w", k, err)
 		}
 		copy(f.stack[top:], rest)
 		top += r * r
@@ -121,10 +121,10 @@ func (f *factor[T]) fill(s *system[T], at T) error {
 	return nil
 }
 
-func (f *factor[T]) eliminate(front *ldl.Front[T], rest []T, where string) error {
+func (f *factor[T]) eliminate(front *ldl.Front[T], rest []T) error {
 	g, err := front.Eliminate(rest, f.work)
 	if err != nil {
-		return fmt.Errorf("channel: %s: %w", where, err)
+		return err
 	}
 	f.negative += g.Negative
 	f.growth = max(f.growth, g.Growth)
@@ -165,8 +165,8 @@ func (f *factor[T]) leaf(n *node, front *ldl.Front[T], rest []T, at T) error {
 		} else {
 			k.form(b, own, &coef)
 		}
-		if err := f.eliminate(b, own, fmt.Sprintf("cell %d", n.cell)); err != nil {
-			return err
+		if err := f.eliminate(b, own); err != nil {
+			return fmt.Errorf("channel: cell %d: %w", n.cell, err)
 		}
 		spread(k, front, rest, own, n.maps[0])
 	}

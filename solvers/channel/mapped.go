@@ -22,6 +22,8 @@ type factors struct {
 	p      int
 	values [][]float64 // [function][point]
 	x, w   []float64
+
+	powers [3][][]float64 // integrals with the weights 1, x, x^2, made when first needed
 }
 
 func (f *factors) h(a int) int { return a }
@@ -68,6 +70,28 @@ func (f *factors) gram(weight func(x float64) float64) [][]float64 {
 	return m
 }
 
+// polynomial gives all integrals with the weight a + b x + c x^2.
+func (f *factors) polynomial(a, b, c float64) [][]float64 {
+	for k := range f.powers {
+		if f.powers[k] == nil {
+			f.powers[k] = f.gram(func(x float64) float64 { return math.Pow(x, float64(k)) })
+		}
+	}
+	if b == 0 && c == 0 && a == 1 {
+		return f.powers[0]
+	}
+	m := make([][]float64, len(f.values))
+	numbers := make([]float64, len(m)*len(m))
+	for i := range m {
+		m[i] = numbers[i*len(m) : (i+1)*len(m)]
+		one, x, xx := f.powers[0][i], f.powers[1][i], f.powers[2][i]
+		for j := range m[i] {
+			m[i][j] = a*one[j] + b*x[j] + c*xx[j]
+		}
+	}
+	return m
+}
+
 // pull is the one-dimensional integrals of a mapped cell.
 type pull struct {
 	fx, fy       *factors
@@ -91,19 +115,16 @@ func extra(g0, g1 float64) int {
 	return int(min(math.Ceil(37/(2*math.Log(rho))), mostExtra-1)) + 1
 }
 
-func newPull(o orders, q quadrilateral) *pull {
+func newPull(t *Topology, o orders, q quadrilateral) *pull {
 	points := o.py + 1 + extra(q.right[0]-q.left[0], q.right[1]-q.left[1])
-	p := &pull{fx: newFactors(o.px, o.px+2), fy: newFactors(o.py, points), h: q.height / 2}
-	g := func(v float64) float64 {
-		return ((q.right[0]-q.left[0])*(1-v) + (q.right[1]-q.left[1])*(1+v)) / 4
-	}
+	p := &pull{fx: t.table(o.px, o.px+2), fy: t.table(o.py, points), h: q.height / 2}
+	low, high := q.right[0]-q.left[0], q.right[1]-q.left[1]
+	g0, g1 := (high+low)/4, (high-low)/4 // g = g0 + g1 v
 	dl, dr := (q.left[1]-q.left[0])/2, (q.right[1]-q.right[0])/2
-	c := func(u float64) float64 { return (dl*(1-u) + dr*(1+u)) / 2 }
-	one := func(float64) float64 { return 1 }
-	p.u1, p.uc = p.fx.gram(one), p.fx.gram(c)
-	p.uc2 = p.fx.gram(func(u float64) float64 { return c(u) * c(u) })
-	p.vInv = p.fy.gram(func(v float64) float64 { return 1 / g(v) })
-	p.v1, p.vg = p.fy.gram(one), p.fy.gram(g)
+	c0, c1 := (dr+dl)/2, (dr-dl)/2 // c = c0 + c1 u
+	p.u1, p.uc, p.uc2 = p.fx.polynomial(1, 0, 0), p.fx.polynomial(c0, c1, 0), p.fx.polynomial(c0*c0, 2*c0*c1, c1*c1)
+	p.vInv = p.fy.gram(func(v float64) float64 { return 1 / (g0 + g1*v) })
+	p.v1, p.vg = p.fy.polynomial(1, 0, 0), p.fy.polynomial(g0, g1, 0)
 	return p
 }
 
@@ -139,8 +160,8 @@ func times(f, g product, mx, my [][]float64) float64 {
 }
 
 // mappedMatrices gives A and B of a mapped cell.
-func mappedMatrices[T ldl.Number](s *shape[T], q quadrilateral, eps [3]T) (a, b []T) {
-	p := newPull(s.orders, q)
+func mappedMatrices[T ldl.Number](t *Topology, s *shape[T], q quadrilateral, eps [3]T) (a, b []T) {
+	p := newPull(t, s.orders, q)
 	list := s.mapped[0].list
 	n := len(list)
 	all := make([]parts, n)

@@ -50,7 +50,7 @@ func TestMappedMatricesOfRectangle(t *testing.T) {
 	p := pencil(t, mesh, 2*math.Pi/1.55e-6, eps)
 	s := p.cplx
 	shape := s.kit.shapes[orders{5, 4}]
-	a, b := mappedMatrices(shape, corners(mesh, 0, 0, p.k), eps)
+	a, b := mappedMatrices(p.t, shape, corners(mesh, 0, 0, p.k), eps)
 	other := &system[complex128]{t: p.t, kit: s.kit, cells: []local[complex128]{{classes: shape.mapped, ma: a, mb: b}}}
 	n := p.t.unknowns
 	x, y, z := make([]complex128, n), make([]complex128, n), make([]complex128, n)
@@ -143,7 +143,7 @@ func TestSmallLoss(t *testing.T) {
 func TestWeights(t *testing.T) {
 	for _, ratio := range []float64{1, 1.001, 3, 20, 1.0 / 40} {
 		q := quadrilateral{right: [2]float64{1, ratio}, height: 1}
-		p := newPull(orders{2, 9}, q)
+		p := newPull(&Topology{tables: map[[2]int]*factors{}}, orders{2, 9}, q)
 		sum := 0.0 // H_0 + H_1 = 1
 		for i := range 2 {
 			for j := range 2 {

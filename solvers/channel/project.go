@@ -22,8 +22,7 @@ func (fd *finder[T]) project(v [][]T) ([]pair[T], error) {
 	av, bv := make([][]T, m), make([][]T, m)
 	for i, x := range v {
 		av[i], bv[i] = make([]T, len(x)), make([]T, len(x))
-		fd.s.multiply(av[i], x, 1, 0)
-		fd.s.multiply(bv[i], x, 0, 1)
+		fd.s.multiplyBoth(av[i], bv[i], x)
 	}
 	a, b := make([][]complex128, m), make([][]complex128, m)
 	for i := range m {

@@ -1,6 +1,7 @@
 package channel
 
 import (
+	"betaloom/solvers/internal/kernel"
 	"betaloom/solvers/internal/ldl"
 	"betaloom/solvers/section"
 )
@@ -12,6 +13,7 @@ type system[T ldl.Number] struct {
 	t      *Topology
 	kit    *kit[T]
 	cells  []local[T]
+	scaled []T
 	weight []float64 // of each unknown: its diagonal in |A| + |B|
 }
 
@@ -31,7 +33,7 @@ func newSystem[T ldl.Number](t *Topology, kit *kit[T], m *section.Mesh, k float6
 			s.cells[n].classes = shape.straight
 			continue
 		}
-		a, b := mappedMatrices(shape, q, eps[c.medium])
+		a, b := mappedMatrices(t, shape, q, eps[c.medium])
 		s.cells[n] = local[T]{classes: shape.mapped, ma: a, mb: b}
 	}
 	s.weigh()
@@ -119,14 +121,59 @@ func (s *system[T]) multiply(dst, x []T, ca, cb T) {
 			in, out = grow(in, k.size()), grow(out, k.size())
 			k.gather(in, x, at, c.skel)
 			clear(out)
-			if l.ma != nil {
+			switch {
+			case l.ma != nil && ca == 0:
+				in2 := grow(s.scaled, k.size())
+				s.scaled = in2
+				for i, v := range in {
+					in2[i] = cb * v
+				}
+				symmetric(out, l.mb, in2)
+			case l.ma != nil:
 				l.product(out, in, ca, cb)
-			} else {
+			default:
 				k.product(out, in, &f)
 			}
 			k.scatter(dst, out, at, c.skel)
 			at += k.inner
 		}
+	}
+}
+
+// multiplyBoth sets da to A x and db to B x.
+func (s *system[T]) multiplyBoth(da, db, x []T) {
+	clear(da)
+	clear(db)
+	var in, a, b []T
+	for n := range s.cells {
+		c, l := &s.t.cells[n], &s.cells[n]
+		at := c.start
+		for _, k := range l.classes {
+			in, a, b = grow(in, k.size()), grow(a, k.size()), grow(b, k.size())
+			k.gather(in, x, at, c.skel)
+			clear(a)
+			clear(b)
+			if l.ma != nil {
+				symmetric(a, l.ma, in)
+				symmetric(b, l.mb, in)
+			} else {
+				k.product(a, in, &l.a)
+				k.product(b, in, &l.b)
+			}
+			k.scatter(da, a, at, c.skel)
+			k.scatter(db, b, at, c.skel)
+			at += k.inner
+		}
+	}
+}
+
+// symmetric adds the product of a lower triangle's matrix.
+func symmetric[T ldl.Number](y, m, x []T) {
+	n := len(x)
+	for i, xi := range x {
+		row := m[i*n : i*n+i]
+		y[i] += kernel.Dot(row, x[:i]) + m[i*n+i]*xi
+		kernel.Axpy(y[:i], row, xi)
 	}
 }
 
