@@ -15,6 +15,9 @@ func (t *Topology) rule(o orders, q quadrilateral) *ruled {
 		fx: t.table(o.px, o.px+2), h: q.height / 2,
 		fy: t.table(o.py, o.py+1+extra(q.right[0]-q.left[0], q.right[1]-q.left[1])),
 	}
+	ny := len(r.fy.x)
+	room := make([]float64, ny+len(r.fx.x))
+	r.g, r.c = room[:0:ny], room[ny:ny]
 	for _, v := range r.fy.x {
 		r.g = append(r.g, ((q.right[0]-q.left[0])*(1-v)+(q.right[1]-q.left[1])*(1+v))/4)
 	}

@@ -18,13 +18,42 @@ func (fd *finder[T]) judge(round int) (shift float64, done bool, err error) {
 			return 0, true, nil
 		}
 		low := fd.low
+		if m == 0 && round > 0 {
+			shift, err := fd.enclose(low, fd.high)
+			return shift, false, err
+		}
 		if m == 0 {
 			return fd.high, false, nil
 		}
 		top := fd.value(m - 1)
+		if round > 0 {
+			shift, err := fd.enclose(low, fd.below(m-1))
+			return shift, false, err
+		}
 		return top - min(1e-3*top, 0.1*(top-low)), false, nil
 	}
 	return fd.below(bad), false, nil
+}
+
+// enclose halves the stretch from low to high, above which no mode is missing, until it is narrow about the highest missing
+// one, and gives its lower end.
+func (fd *finder[T]) enclose(low, high float64) (float64, error) {
+	const halvings = 16
+	for range halvings {
+		if high-low < 1e-3*(high-fd.low) || high-low < 1e-9*high {
+			break
+		}
+		pr, err := fd.factor(fromReal[T]((low + high) / 2))
+		if err != nil {
+			return 0, err
+		}
+		if pr.above > fd.foundAbove(pr.at) {
+			low = pr.at
+		} else {
+			high = pr.at
+		}
+	}
+	return low, nil
 }
 
 // lossy judges without a proof: as many modes as the real parts have down to the lowest wanted one are taken for all. Where fewer

@@ -1,8 +1,10 @@
 package channel
 
 import (
+	"cmp"
 	"math"
 	"math/cmplx"
+	"slices"
 	"sort"
 
 	"betaloom/schema"
@@ -84,18 +86,25 @@ type Sample struct{ E, H [3]complex128 }
 // Samples gives the field at points of the mesh; points in metal or outside have none.
 func (p *Pencil) Samples(m *Pair, x, y []float64) []Sample {
 	out := make([]Sample, len(x))
-	index := map[[2]int]int{}
-	for i := range p.t.cells {
-		index[[2]int{p.t.cells[i].i, p.t.cells[i].j}] = i
-	}
 	beta := cmplx.Sqrt(m.L)
 	for n := range x {
 		i, j, u, v, ok := p.locate(x[n], y[n])
-		if at, in := index[[2]int{i, j}]; ok && in {
-			out[n] = p.sample(&p.t.cells[at], m.X, u, v, beta)
+		if c := p.t.cell(i, j); ok && c != nil {
+			out[n] = p.sample(c, m.X, u, v, beta)
 		}
 	}
 	return out
+}
+
+// cell gives the active cell of column i and row j, nil where there is none; they are listed row by row.
+func (t *Topology) cell(i, j int) *cell {
+	at, in := slices.BinarySearchFunc(t.cells, [2]int{j, i}, func(c cell, want [2]int) int {
+		return cmp.Or(cmp.Compare(c.j, want[0]), cmp.Compare(c.i, want[1]))
+	})
+	if !in {
+		return nil
+	}
+	return &t.cells[at]
 }
 
 // locate finds the cell of a point and its place there.

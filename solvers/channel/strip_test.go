@@ -197,7 +197,7 @@ func BenchmarkStrip(b *testing.B) {
 				for b.Loop() {
 					last = do()
 				}
-				b.ReportMetric(math.Abs(last.index(stripK)-stripTE), "error")
+				b.ReportMetric(math.Abs(last.index(stripK)-stripTE)*1e9, "nano-error")
 				b.ReportMetric(b.Elapsed().Seconds()*1e3/float64(b.N), "ms")
 			})
 		}

@@ -30,7 +30,7 @@ func (p *point) modes(answer []solved, at int) []solvers.Mode {
 
 // generous says whether a coarser level would do as well.
 func (p *point) generous(answer []solved) bool {
-	const enough = 1e-3
+	const enough = 0.2 / step
 	for i := range answer {
 		if answer[i].bound.neff > enough*p.accuracy.Neff {
 			return false

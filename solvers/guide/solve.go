@@ -79,7 +79,7 @@ func (p *point) solve(s *start) ([]solvers.Mode, solvers.Count, error) {
 	}
 	p.bounds = s.bounds
 	p.level(&p.bounds)
-	coarse, at, err := p.begin(s.level)
+	coarse, err := p.begin(s.level)
 	if err != nil {
 		return nil, solvers.Count{}, err
 	}
@@ -87,7 +87,7 @@ func (p *point) solve(s *start) ([]solvers.Mode, solvers.Count, error) {
 	if len(coarse) == 0 {
 		return nil, count, nil
 	}
-	answer, at, err := p.climb(coarse, at)
+	answer, at, err := p.climb(coarse, s.level)
 	if err != nil {
 		return nil, solvers.Count{}, err
 	}
@@ -109,22 +109,21 @@ func (p *point) count() (c solvers.Count) {
 	return c
 }
 
-// begin counts the modes and solves the coarse mesh of a level, or of a finer one where the first is too coarse to show them all.
-func (p *point) begin(at int) ([]classModes, int, error) {
-	const tries = 3
-	for try := range tries {
-		l := levels()[at]
-		if err := p.census(fineness{max(l.coarse.layers, 1), max(l.coarse.order, 4)}); err != nil {
-			return nil, 0, err
+// begin counts the modes and solves the coarse mesh of a level, or a finer one where that is too coarse to show them all.
+func (p *point) begin(at int) ([]classModes, error) {
+	const tries = 4
+	l := levels()[at].coarse
+	for try := 1; ; try++ {
+		if err := p.census(fineness{max(l.layers, 1), max(l.order, 4), farGrowth}); err != nil {
+			return nil, err
 		}
-		coarse, err := p.settle(l.coarse, try+1 == tries)
-		if !errors.Is(err, errHidden) || at+1 == len(levels()) {
-			return coarse, at, err
+		coarse, err := p.settle(l, try == tries)
+		if !errors.Is(err, errHidden) {
+			return coarse, err
 		}
-		at++
+		l.order++
 		p.forget()
 	}
-	return nil, 0, errHidden
 }
 
 // errHidden says that modes which were counted are not among those of a coarse mesh.
@@ -367,9 +366,6 @@ func (p *point) climb(coarse []classModes, at int) ([]solved, int, error) {
 		coarse = fine
 	}
 }
-
-// step is by how much a level is better than the one before, as a rule.
-const step = 15
 
 // fine solves the classes of modes on a fine mesh, and once more if its walls turn out to be too near.
 func (p *point) fine(sets []classModes, l fineness) ([]classModes, error) {
