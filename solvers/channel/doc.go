@@ -54,10 +54,13 @@
 //	4  8  17176  +4e-09  +9e-09
 //	5  10  36080  +1e-10  +3e-10
 //
-// (67,200 unknowns: below 2e-11, the reference's own digits.) On one core a point with its count takes about 2, 6, 15, 23 and 50 ms for the first
-// five sizes of quasi-TE from a neighbour's vector, three times that from nothing, and each of its two factorisations 0.5, 1.8,
-// 5, 9 and 18 ms (BenchmarkStrip). For the fields without corners of metal guides and films the error is
+// (67,200 unknowns: below 2e-11, the reference's own digits.) On one core a point with its count takes about 1.1, 3, 6.4, 9 and 21 ms for the first
+// five sizes of quasi-TE from a neighbour's vector, three times that from nothing, and each of its two factorisations 0.3, 0.8,
+// 1.8, 2.6 and 6 ms (BenchmarkStrip). For the fields without corners of metal guides and films the error is
 // exponentially small in the order. The residual of a Pair bounds what the iteration left: the error of N from that is about its square.
+//
+// Differentiate gives what L owes to the frequency, to third order, and to every parameter: the derivatives of the discrete
+// eigenvalue, exact to the accuracy of the vector's own derivative (1e-11). Tails estimates the error of L by the highest polynomials.
 //
 // # When it fails
 //

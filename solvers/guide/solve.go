@@ -27,15 +27,32 @@ type warm [2]vectors
 
 type vectors struct {
 	mesh *section.Mesh
-	x    [][]complex128
+	w    float64        // angular frequency
+	x    [][]complex128 // of the modes
+	x1   [][]complex128 // their derivatives in w; nil where they are not known
 }
 
-// fits gives the vectors where they belong to such a mesh.
-func (v *vectors) fits(m *section.Mesh) [][]complex128 {
+// fits gives the vectors where they belong to such a mesh, carried on to the frequency w.
+func (v *vectors) fits(m *section.Mesh, w float64) [][]complex128 {
 	if v.mesh == nil || !v.mesh.Same(m) {
 		return nil
 	}
-	return v.x
+	const far = 0.03 // relative change of frequency over which the derivative leads on
+	dw := w - v.w
+	if dw == 0 || math.Abs(dw) > far*w {
+		return v.x
+	}
+	out := make([][]complex128, len(v.x))
+	for i, x := range v.x {
+		out[i] = x
+		if x1 := v.x1[i]; x1 != nil {
+			out[i] = make([]complex128, len(x))
+			for j := range x {
+				out[i][j] = x[j] + complex(dw, 0)*x1[j]
+			}
+		}
+	}
+	return out
 }
 
 func startOf(near []solvers.Mode) *start {
@@ -192,7 +209,7 @@ func (p *point) find(c *class, l fineness, want, stage int, guess []float64) (cl
 		return out, err
 	}
 	out.mesh = mesh
-	o := channel.Options{Want: want, Low: c.low, Near: c.start[stage].fits(mesh), Guess: guess, Slopes: stage == onFine || p.cold}
+	o := channel.Options{Want: want, Low: c.low, Near: c.start[stage].fits(mesh, p.w), Guess: guess, Slopes: stage == onFine || p.cold}
 	if len(o.Near) >= want {
 		o.Near, o.Expect = o.Near[:want], want
 	} else if len(guess) >= want {
@@ -206,7 +223,7 @@ func (p *point) find(c *class, l fineness, want, stage int, guess []float64) (cl
 	if err != nil {
 		return out, err
 	}
-	v := vectors{mesh: mesh}
+	v := vectors{mesh: mesh, w: p.w}
 	for _, m := range pairs {
 		s := solved{pair: m, pencil: pencil, class: c, k: p.k, d: channel.Derivatives{L: jet.Const(m.L)}}
 		if o.Slopes {
@@ -217,7 +234,7 @@ func (p *point) find(c *class, l fineness, want, stage int, guess []float64) (cl
 			s.tails = pencil.Tails(&m)
 		}
 		out.modes = append(out.modes, s)
-		v.x = append(v.x, m.X)
+		v.x, v.x1 = append(v.x, m.X), append(v.x1, m.X1)
 	}
 	c.start[stage] = v
 	return out, nil
