@@ -2,9 +2,9 @@ package scheduler
 
 import (
 	"context"
+	"math"
 	"time"
 
-	"betaloom/scheduler/grid"
 	"betaloom/schema/column"
 	"betaloom/schema/point"
 	"betaloom/solvers"
@@ -21,77 +21,92 @@ type Estimate struct {
 
 // What the estimate rests on besides the sample.
 const (
-	samplePoints  = 64
-	sampleTime    = 250 * time.Millisecond
+	samplePairs   = 64
+	sampleTime    = time.Second
 	secondsPerRow = 15e-6 // encoding a row of a part and joining it
 	bytesPerValue = 16    // the same value stands in a part, compressed, and in modes.parquet
+
+	bytesPerTile = 26e3  // a part's columns, their units and descriptions: most of the part of a small tile
+	bytesPerRun  = 300e3 // the report
 )
 
-// Estimate solves a few points spread over the grid, for a quarter of a
-// second at most, and scales up. A point that fails or is left out by keep
+// Estimate solves a few pairs of neighbours spread over the grid, for a
+// second or until the first pair is done, and scales up: of a tile, one point starts from
+// nothing and the others from their neighbour. A point that fails or is left out by keep
 // counts as one without modes.
 func (p *Plan) Estimate(ctx context.Context, workers int) (Estimate, error) {
 	problem, _, err := choose.New(p.Grid.Physics())
 	if err != nil {
 		return Estimate{}, err
 	}
-	points, rows := 0, 0
-	begun := time.Now()
-	for k := -1; k < samplePoints && time.Since(begun) < sampleTime; k++ {
-		if k == 0 {
-			begun = time.Now() // the first one warms up
-		}
-		n, err := p.try(ctx, problem, max(k, 0))
+	var all pair
+	if _, err := p.try(ctx, problem, 0); err != nil { // warms up
+		return Estimate{}, err
+	}
+	k, begun := 0, time.Now()
+	for ; k < samplePairs && (k == 0 || time.Since(begun) < sampleTime); k++ {
+		one, err := p.try(ctx, problem, k)
 		if err != nil {
 			return Estimate{}, err
 		}
-		if k >= 0 {
-			points++
-			rows += n
-		}
+		all.first, all.next, all.rows = all.first+one.first, all.next+one.next, all.rows+one.rows
 	}
-	return p.scale(points, rows, time.Since(begun), workers), nil
+	all.first, all.next = all.first/time.Duration(k), all.next/time.Duration(k)
+	return p.scale(all, float64(all.rows)/float64(2*k), workers), nil
 }
 
-// try solves the k-th sample point and counts its modes. An error is not of
-// the point.
-func (p *Plan) try(ctx context.Context, problem solvers.Problem, k int) (modes int, err error) {
-	q, ok, err := sample(p.Grid, k)
-	if err != nil || !ok {
-		return 0, err
-	}
-	list, _, err := problem.Modes(ctx, q, p.Grid.Physics().Modes, nil)
-	if ctx.Err() != nil {
-		return 0, ctx.Err()
-	}
-	if err != nil {
-		return 0, nil
-	}
-	return len(list), nil
+// pair is how long two neighbours take, the first of which starts from nothing, and the modes of both.
+type pair struct {
+	first, next time.Duration
+	rows        int
 }
 
-func (p *Plan) scale(points, rows int, took time.Duration, workers int) Estimate {
-	points = max(points, 1)
-	n := float64(p.Grid.Points())
-	e := Estimate{
-		PointsPerSecond: float64(points) / took.Seconds(),
-		ModesPerPoint:   float64(rows) / float64(points),
-	}
-	allRows := n * max(e.ModesPerPoint, 1)
-	seconds := (n/e.PointsPerSecond + allRows*secondsPerRow) / float64(max(workers, 1))
-	e.Time = time.Duration(seconds * float64(time.Second))
-	e.DiskBytes = int64(allRows * float64(len(column.Modes(p.Grid.Physics()))) * bytesPerValue)
-	return e
-}
-
-// sample gives the k-th of the points to try; ok is false where keep leaves it
-// out or its parameters cannot be evaluated.
-func sample(g *grid.Grid, k int) (q solvers.Q, ok bool, err error) {
-	t := g.Tile(k * g.Tiles() / samplePoints)
+// try solves the k-th pair of the sample. An error is not of a point.
+func (p *Plan) try(ctx context.Context, problem solvers.Problem, k int) (one pair, err error) {
+	spread := (37*k + samplePairs/2) % samplePairs // from the middle, the first few already far apart
+	t := p.Grid.Tile(spread * p.Grid.Tiles() / samplePairs)
 	points, err := point.New(t)
 	if err != nil {
-		return nil, false, err
+		return one, err
 	}
-	keep, bad := points.At(k * 7919 % t.Points()) // a prime, so that samples of one tile differ along every axis
-	return points.Q, keep && bad == nil, nil
+	local := k * 7919 % t.Points() // a prime, so that samples of one tile differ along every axis
+	begun := time.Now()
+	near, err := p.solve(ctx, problem, points, local, nil)
+	if err != nil {
+		return one, err
+	}
+	one.first = time.Since(begun)
+	next, err := p.solve(ctx, problem, points, (local+1)%t.Points(), near)
+	one.next, one.rows = time.Since(begun)-one.first, len(near)+len(next)
+	return one, err
+}
+
+// solve gives a point's modes: none where keep leaves it out, its parameters cannot be evaluated or it fails.
+func (p *Plan) solve(ctx context.Context, problem solvers.Problem, points *point.Points, local int, near []solvers.Mode) ([]solvers.Mode, error) {
+	keep, bad := points.At(local)
+	if !keep || bad != nil {
+		return nil, nil
+	}
+	list, _, err := problem.Modes(ctx, points.Q, p.Grid.Physics().Modes, near)
+	if ctx.Err() != nil {
+		return nil, ctx.Err()
+	}
+	if err != nil {
+		return nil, nil
+	}
+	return list, nil
+}
+
+// scale takes what a pair costs to the whole grid. Workers take whole tiles.
+func (p *Plan) scale(of pair, modes float64, workers int) Estimate {
+	n, tiles := float64(p.Grid.Points()), float64(p.Grid.Tiles())
+	solving := tiles*of.first.Seconds() + (n-tiles)*of.next.Seconds()
+	rows := n * max(modes, 1)
+	rounds := math.Ceil(tiles / float64(max(workers, 1)))
+	return Estimate{
+		PointsPerSecond: n / solving,
+		ModesPerPoint:   modes,
+		Time:            time.Duration((solving + rows*secondsPerRow) * rounds / tiles * float64(time.Second)),
+		DiskBytes:       int64(rows*float64(len(column.Modes(p.Grid.Physics())))*bytesPerValue + tiles*bytesPerTile + bytesPerRun),
+	}
 }

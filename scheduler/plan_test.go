@@ -7,6 +7,7 @@ import (
 	"math"
 	"strings"
 	"testing"
+	"time"
 
 	"betaloom/scheduler"
 	"betaloom/schema/sweep"
@@ -118,6 +119,36 @@ func TestEstimate(t *testing.T) {
 	}
 	if values := 10_000 * one.ModesPerPoint * 30; one.DiskBytes < int64(8*values) || math.IsInf(one.PointsPerSecond, 0) {
 		t.Errorf("found %d bytes, expected at least those of thirty columns", one.DiskBytes)
+	}
+}
+
+// TestEstimateOfStrips: tiles of strips are shared by as many workers as there are tiles and no more, and a point takes
+// milliseconds at least and no seconds (measured: 10 to 100 ms; a hundred times either way for the machine).
+func TestEstimateOfStrips(t *testing.T) {
+	src := strings.NewReplacer("FILM", "{index: 2}", "WAVE", "{from: 1.5 um, to: 1.6 um, count: 130}").Replace(film)
+	src = strings.Replace(src, "thickness: height", "thickness: height, fill: oxide, strips: [{centre: 0 um, width: 1 um}]", 1)
+	sw, err := sweep.Parse("strip.yaml", []byte(src), nil)
+	if err != nil {
+		t.Fatal(err)
+	}
+	p, err := scheduler.NewPlan("strip.yaml", sw)
+	if err != nil {
+		t.Fatal(err)
+	}
+	one, err := p.Estimate(t.Context(), 1)
+	if err != nil {
+		t.Fatal(err)
+	}
+	if !(one.ModesPerPoint >= 1 && one.ModesPerPoint <= 2 && one.PointsPerSecond > 0.1 && one.PointsPerSecond < 10_000) {
+		t.Errorf("found %+v, expected one to two modes and 0.1 ms to 10 s a point", one)
+	}
+	many, err := p.Estimate(t.Context(), 1_000_000)
+	if err != nil {
+		t.Fatal(err)
+	}
+	tiles := time.Duration(p.Grid.Tiles())
+	if least := one.Time / (10 * tiles); tiles < 20 || many.Time < least || many.Time > one.Time/2 { // samples vary with what else runs
+		t.Errorf("%v with a worker for each of %d tiles, %v with one for all", many.Time, tiles, one.Time)
 	}
 }
 

@@ -92,10 +92,10 @@ func (p *plan) write(con *console) {
 	for i, a := range p.Axes {
 		fmt.Fprintf(con.out, "%-10s%s: %d values, %s to %s\n", label(i, "axes"), a.Parameter, a.Count, a.From, a.To)
 	}
-	fmt.Fprintf(con.out, "grid      %d points in %d tiles\n", p.Points, p.Tiles)
+	fmt.Fprintf(con.out, "grid      %s in %s\n", several(p.Points, "point"), several(p.Tiles, "tile"))
 	took := time.Duration(p.Seconds * float64(time.Second))
-	fmt.Fprintf(con.out, "estimate  %s with %d workers, %s on disk (from sample points: %s points a second and core, %.3g modes each)\n",
-		roughly(took), p.Workers, bytesText(p.Bytes), compact(p.PointsPerCore), p.ModesPerPoint)
+	fmt.Fprintf(con.out, "estimate  %s with %s, %s on disk (from sample points: %s points a second and core, %.3g modes each)\n",
+		roughly(took), several(p.Workers, "worker"), bytesText(p.Bytes), compact(p.PointsPerCore), p.ModesPerPoint)
 	for _, w := range p.Warnings {
 		fmt.Fprintf(con.out, "warning   %s\n", w)
 	}
@@ -128,14 +128,27 @@ func roughly(d time.Duration) string {
 	return strings.TrimSuffix(d.Round(time.Minute).String(), "0s")
 }
 
+// several counts things.
+func several(n int, thing string) string {
+	if n == 1 {
+		return "1 " + thing
+	}
+	return fmt.Sprintf("%d %ss", n, thing)
+}
+
+// bytesText gives a size with two digits or all before the point.
 func bytesText(n int64) string {
+	v, unit := float64(n)/1e3, "kB"
 	switch {
 	case n >= 1e9:
-		return fmt.Sprintf("%.2g GB", float64(n)/1e9)
+		v, unit = v/1e6, "GB"
 	case n >= 1e6:
-		return fmt.Sprintf("%.2g MB", float64(n)/1e6)
+		v, unit = v/1e3, "MB"
 	}
-	return fmt.Sprintf("%.2g kB", float64(n)/1e3)
+	if v < 10 {
+		return fmt.Sprintf("%.1f %s", v, unit)
+	}
+	return fmt.Sprintf("%.0f %s", v, unit)
 }
 
 // loadSweep reads a sweep file; one that cannot be read is a fault of the

@@ -24,10 +24,28 @@ import (
 	"betaloom/schema"
 )
 
-// TilePoints is the most points that a tile holds. Its size makes the work
-// of a tile large against that of the queue (a slab's tile takes tens of
-// milliseconds) and its part small enough to hold many of them in memory.
-const TilePoints = 4096
+// The most points that a tile holds: its work is large against that of the
+// queue and its part small enough to hold many of them in memory, yet no
+// worker is left with much more of a run than the others.
+const (
+	quickTile = 4096 // of the microseconds that a slab takes: tens of milliseconds
+
+	// of the tens of milliseconds that a section with strips takes: seconds. The first
+	// point, which has no neighbour to start from, takes as long as about five others.
+	slowTile = 64
+)
+
+// tilePoints is the most points that a tile of this physics holds.
+func tilePoints(p *schema.Physics) int {
+	if l := p.Section.Layers; l != nil {
+		for _, layer := range l.Layers {
+			if len(layer.Strips) > 0 {
+				return slowTile
+			}
+		}
+	}
+	return quickTile
+}
 
 // MaxPoints is the largest grid that is accepted.
 const MaxPoints = 1_000_000_000
@@ -38,6 +56,7 @@ type Grid struct {
 	axes    []schema.AxisBlock
 	columns []string
 	rows    [][]float64
+	most    int   // points of a tile
 	edges   []int // of a block, in points along each axis
 	blocks  []int // blocks along each axis
 }
@@ -45,7 +64,7 @@ type Grid struct {
 // New makes the grid of a box (axes, in file order) or of rows. With
 // neither, the grid is one point.
 func New(p schema.Physics, axes []schema.AxisBlock, columns []string, rows [][]float64) (*Grid, error) {
-	g := &Grid{physics: p, axes: axes, columns: columns, rows: rows}
+	g := &Grid{physics: p, axes: axes, columns: columns, rows: rows, most: tilePoints(&p)}
 	if rows != nil && len(axes) > 0 {
 		return nil, fmt.Errorf("grid: both axes and rows given")
 	}
@@ -59,7 +78,7 @@ func New(p schema.Physics, axes []schema.AxisBlock, columns []string, rows [][]f
 	if total > MaxPoints {
 		return nil, fmt.Errorf("grid: %.3g points, at most %d are accepted", total, MaxPoints)
 	}
-	g.edges = edges(axes)
+	g.edges = edges(axes, g.most)
 	for i, a := range axes {
 		g.blocks = append(g.blocks, (len(a.Values)+g.edges[i]-1)/g.edges[i])
 	}
@@ -71,14 +90,15 @@ const shortAxis = 8
 
 // edges gives a block's length along each axis. Short axes are spanned whole,
 // the last first and as many as fit; the others share the largest power of two
-// with which a block holds at most TilePoints. That does not depend on how long
-// they are, so one that grows keeps its blocks; when a short axis grows, every
+// with which a block holds at most so many points. Where that is one, the last of
+// them take two, as many as fit. None of it depends on how long they
+// are, so one that grows keeps its blocks; when a short axis grows, every
 // block grows with it, and no tile could be kept anyway.
-func edges(axes []schema.AxisBlock) []int {
+func edges(axes []schema.AxisBlock, most int) []int {
 	list, points, long := make([]int, len(axes)), 1, 0
 	for a := len(axes) - 1; a >= 0; a-- {
 		n := len(axes[a].Values)
-		if n <= shortAxis && points*n <= TilePoints {
+		if n <= shortAxis && points*n <= most {
 			list[a] = n
 			points *= n
 		} else {
@@ -86,11 +106,15 @@ func edges(axes []schema.AxisBlock) []int {
 		}
 	}
 	edge := 1
-	for long > 0 && float64(points)*math.Pow(float64(2*edge), float64(long)) <= TilePoints {
+	for long > 0 && float64(points)*math.Pow(float64(2*edge), float64(long)) <= float64(most) {
 		edge *= 2
 	}
-	for a := range list {
-		if list[a] == 0 {
+	for a := len(list) - 1; a >= 0; a-- {
+		switch {
+		case list[a] > 0:
+		case edge == 1 && 2*points <= most:
+			list[a], points = 2, 2*points
+		default:
 			list[a] = edge
 		}
 	}
@@ -100,7 +124,7 @@ func edges(axes []schema.AxisBlock) []int {
 // rowsPerTile bounds a stretch by what its job message may weigh.
 func (g *Grid) rowsPerTile() int {
 	const numbers = 16384 // about 320 kB of JSON
-	return max(1, min(TilePoints, numbers/max(1, len(g.columns))))
+	return max(1, min(g.most, numbers/max(1, len(g.columns))))
 }
 
 // Axes gives the box's axes in file order; empty for a list of rows.

@@ -3,6 +3,7 @@ package grid
 import (
 	"math"
 	"slices"
+	"strings"
 	"testing"
 
 	"betaloom/schema"
@@ -18,7 +19,28 @@ func axis(name string, n int) schema.AxisBlock {
 
 func box(t *testing.T, axes ...schema.AxisBlock) *Grid {
 	t.Helper()
-	g, err := New(schema.Physics{Format: schema.FormatPhysics}, axes, nil, nil)
+	return boxOf(t, schema.Physics{Format: schema.FormatPhysics}, axes...)
+}
+
+// withStrips is a physics whose points take long.
+func withStrips() schema.Physics {
+	return schema.Physics{Format: schema.FormatPhysics, Section: schema.Section{Layers: &schema.Layers{
+		Layers: []schema.Layer{{Material: "glass"}, {Material: "core", Fill: "glass", Strips: []schema.Strip{{}}}, {Material: "glass"}},
+	}}}
+}
+
+// most is the most points that a tile of the grid of this name may hold: with strips, so few that a sweep of some
+// hundred points occupies several workers.
+func most(name string) int {
+	if strings.HasPrefix(name, "strips") {
+		return 64
+	}
+	return 4096
+}
+
+func boxOf(t *testing.T, p schema.Physics, axes ...schema.AxisBlock) *Grid {
+	t.Helper()
+	g, err := New(p, axes, nil, nil)
 	if err != nil {
 		t.Fatal(err)
 	}
@@ -35,7 +57,19 @@ func grids(t *testing.T) map[string]*Grid {
 	if err != nil {
 		t.Fatal(err)
 	}
+	strips := func(axes ...schema.AxisBlock) *Grid { return boxOf(t, withStrips(), axes...) }
+	stripRows, err := New(withStrips(), nil, []string{"a", "b", "c", "d", "e"}, rows)
+	if err != nil {
+		t.Fatal(err)
+	}
 	return map[string]*Grid{
+		"strips, one axis":    strips(axis("a", 901)),
+		"strips, short axes":  strips(axis("a", 3), axis("b", 8)),
+		"strips, three axes":  strips(axis("a", 3), axis("b", 9), axis("c", 21)),
+		"strips, long beside": strips(axis("a", 13), axis("b", 3), axis("c", 17), axis("d", 8)),
+		"strips, seven axes":  strips(axis("a", 9), axis("b", 9), axis("c", 2), axis("d", 9), axis("e", 1), axis("f", 9), axis("g", 9)),
+		"strips, rows":        stripRows,
+
 		"one point":  box(t),
 		"one axis":   box(t, axis("a", 9001)),
 		"short axis": box(t, axis("a", 3)),
@@ -56,7 +90,7 @@ func TestTilesCoverThePoints(t *testing.T) {
 			var values []float64
 			for i := range g.Tiles() {
 				tile, block := g.Tile(i), g.Block(i)
-				if n := tile.Points(); n < 1 || n > TilePoints {
+				if n := tile.Points(); n < 1 || n > most(name) {
 					t.Fatalf("tile %d holds %d points", i, n)
 				}
 				for local := range tile.Points() {
@@ -127,10 +161,20 @@ func TestBandsFollowThePoints(t *testing.T) {
 // TestGrownBoxKeepsTiles checks that a box which grows at the end of an axis
 // keeps the names of all tiles but those at the old end.
 func TestGrownBoxKeepsTiles(t *testing.T) {
-	for name, lengths := range map[string][3]int{"twice": {100, 50, 200}, "beside a short axis": {2100, 3, 5000}, "from one tile's share": {130, 9, 131}} {
+	for name, c := range map[string]struct {
+		physics             schema.Physics
+		before, beside, now int
+	}{
+		"twice":                          {schema.Physics{}, 100, 50, 200},
+		"beside a short axis":            {schema.Physics{}, 2100, 3, 5000},
+		"from one tile's share":          {schema.Physics{}, 130, 9, 131},
+		"with strips":                    {withStrips(), 19, 9, 33},
+		"with strips, by one":            {withStrips(), 21, 21, 22},
+		"with strips, beside short axis": {withStrips(), 21, 8, 40},
+	} {
 		t.Run(name, func(t *testing.T) {
-			small := box(t, axis("a", lengths[0]), axis("b", lengths[1]))
-			grown := box(t, axis("a", lengths[2]), axis("b", lengths[1]))
+			small := boxOf(t, c.physics, axis("a", c.before), axis("b", c.beside))
+			grown := boxOf(t, c.physics, axis("a", c.now), axis("b", c.beside))
 			names := map[string]bool{}
 			for i := range grown.Tiles() {
 				names[nameOf(t, grown.Tile(i))] = true
@@ -147,6 +191,34 @@ func TestGrownBoxKeepsTiles(t *testing.T) {
 			}
 			if kept == 0 {
 				t.Fatal("no tile was kept")
+			}
+		})
+	}
+}
+
+// TestTileSizes holds blocks to the rule that the package states.
+func TestTileSizes(t *testing.T) {
+	for _, c := range []struct {
+		name    string
+		physics schema.Physics
+		lengths []int
+		want    []int
+	}{
+		{"films: short axes whole, the others alike", schema.Physics{}, []int{101, 71, 3}, []int{32, 32, 3}},
+		{"strips: one axis", withStrips(), []int{201}, []int{64}},
+		{"strips: two axes", withStrips(), []int{61, 81}, []int{8, 8}},
+		{"strips: beside a short axis", withStrips(), []int{3, 9, 21}, []int{3, 4, 4}},
+		{"strips: the last takes two where not all can", withStrips(), []int{9, 21, 3, 8}, []int{1, 2, 3, 8}},
+		{"strips: two more than fit", withStrips(), []int{9, 9, 9, 9, 9, 9, 9, 9}, []int{1, 1, 2, 2, 2, 2, 2, 2}},
+		{"strips: a short axis that does not fit", withStrips(), []int{5, 8, 8}, []int{1, 8, 8}},
+	} {
+		t.Run(c.name, func(t *testing.T) {
+			var axes []schema.AxisBlock
+			for i, n := range c.lengths {
+				axes = append(axes, axis(string(rune('a'+i)), n))
+			}
+			if g := boxOf(t, c.physics, axes...); !slices.Equal(g.edges, c.want) {
+				t.Errorf("blocks of %v, expected %v", g.edges, c.want)
 			}
 		})
 	}

@@ -45,9 +45,9 @@ func mode(p *schema.Physics) []Column {
 func label() []Column {
 	return []Column{
 		{"mode", "", "index of the mode at its point; 0 has the highest effective index", Int32},
-		{"family", "", "the followed mode", String},
+		{"family", "", "the followed mode; of layers with strips the name at this point alone, from the field: TE or TM, changes of sign across, up", String},
 		{"mode_type", "", "TEM, quasi-TEM, TE, TM, LSE, LSM, HE, EH, quasi-TE, quasi-TM or hybrid", String},
-		{"symmetry", "", "exact symmetry label, where the section has mirror planes", String},
+		{"symmetry", "", "exact symmetry label, where the section has mirror planes; x-even, y-odd: the parity of Ex in x, in y", String},
 	}
 }
 
@@ -115,9 +115,21 @@ func field(p *schema.Physics) []Column {
 		{"weff_m", "m", "effective width (int S)^2 / int S^2 of the axial power flow, in one dimension", Float64},
 	}
 	for _, name := range Confinements(p) {
-		list = append(list, Column{"confinement_" + name, "", "share of the axial power in " + name, Float64})
+		list = append(list, Column{"confinement_" + name, "", "share of the axial power in " + confined(p, name), Float64})
 	}
 	return list
+}
+
+// confined says what bears a name, of a layer of strips which part.
+func confined(p *schema.Physics, name string) string {
+	if p.Section.Layers != nil {
+		for _, l := range p.Section.Layers.Layers {
+			if l.Name == name && len(l.Strips) > 0 {
+				return "the strips of " + name + ", without what fills it beside them"
+			}
+		}
+	}
+	return name
 }
 
 func line() []Column {

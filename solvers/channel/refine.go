@@ -106,6 +106,7 @@ func (fd *finder[T]) polish(list []pair[T]) error {
 		for i, m := range list {
 			v[i] = append([]T{}, m.bx...)
 			fd.f.solve(v[i])
+			fd.deflate(v[i])
 		}
 		next, err := fd.project(v)
 		if err != nil {
@@ -126,6 +127,14 @@ func (fd *finder[T]) polish(list []pair[T]) error {
 		fd.accept(m)
 	}
 	return nil
+}
+
+// deflate takes the modes found before out of x: one of them may be nearer the shift than the mode that is sought.
+func (fd *finder[T]) deflate(x []T) {
+	for i := range fd.found {
+		m := &fd.found[i]
+		add(x, m.x, -bilinear(m.bx, x)/bilinear(m.bx, m.x))
+	}
 }
 
 // residual is the worst of a cluster.

@@ -68,10 +68,7 @@ func (k *krylov[T]) apply(x []T) {
 	copy(k.work, x)
 	k.fd.s.multiply(x, k.work, 0, 1)
 	k.fd.f.solve(x)
-	for i := range k.fd.found {
-		m := &k.fd.found[i]
-		add(x, m.x, -bilinear(m.bx, x)/bilinear(m.bx, m.x))
-	}
+	k.fd.deflate(x)
 }
 
 // run extends the basis until the need modes nearest the shift show, to an estimated residual.

@@ -17,9 +17,9 @@ import (
 )
 
 var (
-	campaign     = flag.Int("campaign", 24, "random sections to solve; the full campaign is 10000")
+	campaign     = flag.Int("campaign", 12, "random sections to solve; the full campaign is 10000")
 	campaignSeed = flag.Uint64("campaign-seed", 20261201, "seed of the random sections")
-	campaignFine = flag.Int("campaign-check", 6, "of every so many sections one is solved again at a tighter accuracy")
+	campaignFine = flag.Int("campaign-check", 4, "of every so many sections one is solved again at a tighter accuracy")
 )
 
 // randomSection is a valid section: one to three strips of indices from 1 to 4 with walls from 60 to 90 degrees, on a layer or

@@ -26,7 +26,8 @@
 // Type is quasi-TE where the share of Ex in |Ex|^2 + |Ey|^2 is at least a half, else quasi-TM. Symmetry names the
 // parity of Ex across the mirror planes there are: x-even says that Ex is even in x. Family is TE or TM and the number of times
 // the dominant field changes sign across and up the section: it names the mode at this point from its field alone and does not follow it
-// through crossings; modes of one name are told apart by -2, -3 from the highest index down.
+// through crossings; modes of one name are told apart by -2, -3 from the highest index down. Where the field normal to a conductor turns
+// round from one of its faces to the other, that is no change of sign of the mode: the fundamental mode of a strip over a ground is TM00.
 //
 // The confinement in a named layer is the share of its strips, without what fills the layer beside them; in a layer without
 // strips that of the whole layer. There is no one impedance of such a mode; Z is not given.

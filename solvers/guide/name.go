@@ -38,115 +38,6 @@ func (p *point) window() (x, y [2]float64) {
 	return [2]float64{l - margin, r + margin}, [2]float64{b - margin, t + margin}
 }
 
-// grain is the number of samples across, and up, from which lobes are counted.
-const grain = 24
-
-// lobes is how often the dominant field changes its sign across and up. In the half on one side of a mirror plane it is counted
-// once, and once more in the plane for an odd field.
-func (p *point) lobes(m *solved, te bool) (across, up int) {
-	x, y := p.window()
-	c := m.class
-	if c.halfX {
-		x[0] = (x[0] + x[1]) / 2
-	}
-	if c.halfY {
-		y[0] = (y[0] + y[1]) / 2
-	}
-	var xs, ys []float64
-	for j := range grain {
-		for i := range grain {
-			xs = append(xs, x[0]+(x[1]-x[0])*(float64(i)+0.5)/grain)
-			ys = append(ys, y[0]+(y[1]-y[0])*(float64(j)+0.5)/grain)
-		}
-	}
-	field := make([]float64, grain*grain)
-	axis := 1
-	if te {
-		axis = 0
-	}
-	for i, s := range m.pencil.Samples(&m.pair, xs, ys) {
-		field[i] = real(s.E[axis])
-	}
-	fx, fy := profiles(field)
-	across, up = changes(fx), changes(fy)
-	if c.halfX {
-		across = 2*across + odd(te != (c.wallX == section.Electric))
-	}
-	if c.halfY {
-		up = 2*up + odd(te != (c.wallY == section.Magnetic))
-	}
-	return across, up
-}
-
-func odd(b bool) int {
-	if b {
-		return 1
-	}
-	return 0
-}
-
-// profiles are the functions of x and of y whose product comes nearest to a field: its first singular vectors, by iteration.
-func profiles(field []float64) (fx, fy []float64) {
-	fx, fy = make([]float64, grain), make([]float64, grain)
-	best := 0.0
-	for j := range grain {
-		row := field[j*grain : (j+1)*grain]
-		if n := norm(row); n > best {
-			best = n
-			copy(fx, row)
-		}
-	}
-	const enough = 30
-	for range enough {
-		for j := range fy {
-			fy[j] = dot(field[j*grain:(j+1)*grain], fx)
-		}
-		clear(fx)
-		for j, w := range fy {
-			for i := range fx {
-				fx[i] += w * field[j*grain+i]
-			}
-		}
-		n := norm(fx)
-		if n == 0 {
-			return fx, fy
-		}
-		for i := range fx {
-			fx[i] /= n
-		}
-	}
-	return fx, fy
-}
-
-func dot(a, b []float64) (sum float64) {
-	for i, v := range a {
-		sum += v * b[i]
-	}
-	return sum
-}
-
-func norm(a []float64) float64 { return math.Sqrt(dot(a, a)) }
-
-// changes counts changes of sign among values that are not small.
-func changes(f []float64) (n int) {
-	const small = 0.08
-	top := 0.0
-	for _, v := range f {
-		top = max(top, math.Abs(v))
-	}
-	last := 0.0
-	for _, v := range f {
-		if math.Abs(v) <= small*top {
-			continue
-		}
-		if last*v < 0 {
-			n++
-		}
-		last = v
-	}
-	return n
-}
-
 // signature samples Ex and Ey at four places across and two up the window, with unit norm and the largest
 // one positive.
 func (p *point) signature(m *solved) (s [16]float32) {
@@ -198,3 +89,12 @@ func (c *class) reflect(x, y *float64, midX, midY float64) [2]float64 {
 	}
 	return sign
 }
+
+func dot(a, b []float64) (sum float64) {
+	for i, v := range a {
+		sum += v * b[i]
+	}
+	return sum
+}
+
+func norm(a []float64) float64 { return math.Sqrt(dot(a, a)) }

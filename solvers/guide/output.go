@@ -31,12 +31,7 @@ func (p *point) modes(answer []solved, at int) []solvers.Mode {
 // generous says whether a coarser level would do as well.
 func (p *point) generous(answer []solved) bool {
 	const enough = 0.2 / step
-	for i := range answer {
-		if answer[i].bound.neff > enough*p.accuracy.Neff {
-			return false
-		}
-	}
-	return p.accuracy.Ng == 0 && p.accuracy.GVDPs2PerKm == 0 && p.accuracy.Beta3Ps3PerKm == 0
+	return p.short(answer) < enough
 }
 
 // mode fills one row.

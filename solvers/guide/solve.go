@@ -68,6 +68,7 @@ func startOf(near []solvers.Mode) *start {
 type solved struct {
 	pair   channel.Pair
 	pencil *channel.Pencil
+	mesh   *section.Mesh
 	class  *class
 	d      channel.Derivatives
 	beta   jet.Jet // d and beta have no derivatives where the vector has none
@@ -192,8 +193,8 @@ func (p *point) assemble(c *class, l fineness, b *section.Bounds) (*channel.Penc
 	return pencil, m, err
 }
 
-// errLarge says that a level has more unknowns than are taken on.
-var errLarge = errors.New("the section is too large for a finer mesh")
+// errLarge says that a mesh has more unknowns than are taken on.
+var errLarge = &solvers.ConvergenceError{Where: "mesh", Err: errors.New("the section is too large")}
 
 // The meshes of a level, by which a class keeps its vectors.
 const (
@@ -225,7 +226,7 @@ func (p *point) find(c *class, l fineness, want, stage int, guess []float64) (cl
 	}
 	v := vectors{mesh: mesh, w: p.w}
 	for _, m := range pairs {
-		s := solved{pair: m, pencil: pencil, class: c, k: p.k, d: channel.Derivatives{L: jet.Const(m.L)}}
+		s := solved{pair: m, pencil: pencil, mesh: mesh, class: c, k: p.k, d: channel.Derivatives{L: jet.Const(m.L)}}
 		if o.Slopes {
 			s.d = pencil.Differentiate(&m)
 		}
@@ -367,10 +368,13 @@ func (p *point) climb(coarse []classModes, at int) ([]solved, int, error) {
 	reached := at
 	for {
 		fine, err := p.fine(coarse, levels()[at].fine)
-		if errors.Is(err, errLarge) && answer != nil {
+		switch {
+		case errors.Is(err, errLarge) && answer != nil:
 			return answer, reached, nil
-		}
-		if err != nil {
+		case errors.Is(err, errLarge) && at > 0:
+			at-- // what fits
+			continue
+		case err != nil:
 			return nil, 0, err
 		}
 		answer, reached = p.judge(fine), at
