@@ -82,7 +82,7 @@ func (p *point) truncate(c *class, m *solved, b *section.Bounds) (all bound, sid
 		g, o := max(p.decay(i, c, n), 1e-9*p.k), p.outer(i, c)
 		e := wary * absolute(m.d.Wall[i].L) / (2 * p.k * p.k * n) / (2 * g)
 		f := 2 * *distance(b, i) * p.k * p.k / g * math.Abs(n*ng-o*o)
-		side[i] = bound{neff: e, kappa: e, ng: e * (1 + f), gvd: 3 * e * f * (2 + f) / cw, beta3: 10 * e * f * (f*f + 3*f + 3) / (cw * p.w)}
+		side[i] = bound{neff: e, kappa: e, ng: e * (1 + f), gvd: 6 * e * f * (2 + f) / cw, beta3: 40 * e * f * (f*f + 3*f + 3) / (cw * p.w)}
 		all.add(&side[i])
 	}
 	return all, side
