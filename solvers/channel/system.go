@@ -13,7 +13,6 @@ type system[T ldl.Number] struct {
 	t      *Topology
 	kit    *kit[T]
 	cells  []local[T]
-	scaled []T
 	weight []float64 // of each unknown: its diagonal in |A| + |B|
 }
 
@@ -123,12 +122,8 @@ func (s *system[T]) multiply(dst, x []T, ca, cb T) {
 			clear(out)
 			switch {
 			case l.ma != nil && ca == 0:
-				in2 := grow(s.scaled, k.size())
-				s.scaled = in2
-				for i, v := range in {
-					in2[i] = cb * v
-				}
-				symmetric(out, l.mb, in2)
+				scale(in, cb)
+				symmetric(out, l.mb, in)
 			case l.ma != nil:
 				l.product(out, in, ca, cb)
 			default:

@@ -18,7 +18,7 @@
 // # Unknown
 //
 // At each point the modes of every class are counted on a coarse mesh with walls so far away that every mode fits (proof:
-// inertia). Then they are solved on a coarse mesh, whose walls are moved outward until they do not matter, to see which are
+// inertia; with loss that of the real parts, which is none for a mode whose loss is as large as its index). Then they are solved on a coarse mesh, whose walls are moved outward until they do not matter, to see which are
 // the highest, and these on finer ones until the bounds are as small as asked. From a neighbour's modes (Mode.State) the
 // level, the walls and the vectors are taken over: one coarse and one fine solve are then enough. The same point from the same
 // neighbour has the same bits.

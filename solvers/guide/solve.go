@@ -116,6 +116,9 @@ func (p *point) solve(s *start) ([]solvers.Mode, solvers.Count, error) {
 // count is that of all classes.
 func (p *point) count() (c solvers.Count) {
 	c.Proof = "inertia"
+	if p.lossy() {
+		c.Proof = "inertia of the real parts"
+	}
 	low := math.Inf(1)
 	for i := range p.classes {
 		c.N += p.classes[i].census
@@ -125,6 +128,18 @@ func (p *point) count() (c solvers.Count) {
 		c.Reason = fmt.Sprintf("no mode has an effective index more than %g above %.9g, that of what surrounds the core", closest, low)
 	}
 	return c
+}
+
+// lossy says whether a medium has loss or gain: modes are then counted by the real parts alone.
+func (p *point) lossy() bool {
+	for i := range p.outline.Media {
+		for _, e := range p.outline.Media[i].Eps {
+			if imag(e.V) != 0 {
+				return true
+			}
+		}
+	}
+	return false
 }
 
 // begin counts the modes and solves the coarse mesh of a level, or a finer one where that is too coarse to show them all.

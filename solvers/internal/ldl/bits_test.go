@@ -73,7 +73,5 @@ func put[T Number](h io.Writer, n, s int, one func(x, y float64) T) {
 	}
 	f.Down(x[:s], x[s:n], work)
 	f.Up(x[:s], x[s:n], work)
-	f.DownAll(x[n:n+2*s], x[n+2*s:], work, 2)
-	f.UpAll(x[n:n+2*s], x[n+2*s:], work, 2)
 	fmt.Fprint(h, x)
 }

@@ -9,7 +9,7 @@
 //
 // with L11, the diagonal of D and L21 in Panel, the off-diagonals of 2 x 2 pivots in
 // Off, P in Perm and C, the Schur complement, in Rest. Down and Up solve with the
-// factors for one right-hand side, DownAll and UpAll for several.
+// factors.
 //
 // Blocks. The leading block is factored a span of columns at a time, with pivots chosen from
 // all of it; L21 is solved for and the Schur complement formed in panels of a few columns that
